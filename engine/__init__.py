@@ -1,0 +1,1 @@
+"""Laws, checks and ranking: computes and does nothing else (numpy and the standard library)."""
