@@ -49,3 +49,14 @@ class Part:
     maker: str = ""
     note: str = ""
     limits: tuple[Limit, ...] = field(default=())
+
+
+@dataclass(frozen=True, slots=True)
+class Arrival:
+    """One row of a file as it should land on the shelf."""
+
+    row: int  # as a person counts: the heading is row 1
+    part: Part  # with the limits of this row only
+    stock: int | None = None  # pieces the row says are on hand
+    cost: float | None = None  # of one piece
+    set_aside: bool = False  # kept with its own words, but its symbol is not one of SYMBOLS

@@ -35,7 +35,7 @@ SYMBOLS: dict[str, Symbol] = _table(
     Symbol("ICM", "A", "collector current, peak", "rating", 1e-3, 1000, ("ICP", "IC(peak)", "IC(pulse)")),
     Symbol("IB", "A", "base current, continuous", "rating", 1e-4, 200, ("IBMAX", "IB(max)")),
     Symbol("IBM", "A", "base current, peak", "rating", 1e-4, 400, ("IBP", "IB(peak)")),
-    Symbol("PD", "W", "power dissipation", "rating", 0.02, 1000, ("PT", "PTOT", "PC", "PD(max)", "P")),
+    Symbol("PD", "W", "power dissipation", "rating", 0.02, 1000, ("PT", "PTOT", "PC", "PD(max)")),
     Symbol("TJ", "°C", "junction temperature", "rating", -100, 300, ("TJMAX", "TJ(max)", "TVJ")),
     Symbol(
         "derating(TA)", "W/K", "power derating over ambient temperature", "rating", 1e-4, 1,
@@ -59,9 +59,9 @@ SYMBOLS: dict[str, Symbol] = _table(
     Symbol("V(BR)CEO", "V", "collector–emitter breakdown voltage", "characteristic", 3, 2000, ("BVCEO", "VCEO(sus)")),
     Symbol("V(BR)CBO", "V", "collector–base breakdown voltage", "characteristic", 3, 3000, ("BVCBO",)),
     Symbol("V(BR)EBO", "V", "emitter–base breakdown voltage", "characteristic", 0.3, 100, ("BVEBO",)),
-    Symbol("hFE", "", "static forward current gain", "characteristic", 1, 100_000, ("h21E", "BETA", "β", "B")),
-    Symbol("VCE(sat)", "V", "collector–emitter saturation voltage", "characteristic", 0.005, 10, ("VCES", "UCEsat")),
-    Symbol("VBE(sat)", "V", "base–emitter saturation voltage", "characteristic", 0.3, 10, ("VBES", "UBEsat")),
+    Symbol("hFE", "", "static forward current gain", "characteristic", 1, 100_000, ("h21E", "BETA", "β")),
+    Symbol("VCE(sat)", "V", "collector–emitter saturation voltage", "characteristic", 0.005, 10, ("UCEsat", "VCEsat")),
+    Symbol("VBE(sat)", "V", "base–emitter saturation voltage", "characteristic", 0.3, 10, ("UBEsat", "VBEsat")),
     Symbol("VBE(on)", "V", "base–emitter voltage, conducting", "characteristic", 0.2, 10, ("VBE", "UBE")),
     Symbol("ICBO", "A", "collector–base leakage, emitter open", "characteristic", 1e-13, 0.1, ("ICB0",)),
     Symbol("ICES", "A", "collector leakage, base shorted to emitter", "characteristic", 1e-13, 0.1),
@@ -77,14 +77,12 @@ SYMBOLS: dict[str, Symbol] = _table(
     Symbol("tf", "s", "fall time", "characteristic", 1e-11, 1e-3),
     Symbol("ton", "s", "turn-on time", "characteristic", 1e-11, 1e-3),
     Symbol("toff", "s", "turn-off time", "characteristic", 1e-11, 1e-3),
-    Symbol("NF", "dB", "noise figure", "characteristic", 0, 40, ("F",)),
+    Symbol("NF", "dB", "noise figure", "characteristic", 0, 40),
     Symbol("hfe", "", "small-signal current gain", "characteristic", 1, 100_000, ("h21e",)),
     Symbol("|hfe|", "", "small-signal current gain at high frequency", "characteristic", 0.1, 10_000, ("|h21e|",)),
     Symbol("hie", "Ω", "small-signal input resistance", "characteristic", 0.1, 1e6, ("h11e",)),
     Symbol("hoe", "S", "small-signal output conductance", "characteristic", 1e-9, 1, ("h22e",)),
 )  # fmt: skip
-
-_TELL_APART = {"hFE", "hfe", "|hfe|"}  # differ in case only: static and small-signal gain
 
 
 def find_symbol(text: str) -> Symbol | None:

@@ -1,0 +1,130 @@
+"""What judging gives back: columns over the parts of a shelf, and the full explanation of one part."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from enum import IntEnum
+
+import numpy as np
+from numpy.typing import NDArray
+
+from .evidence import Grades
+from .requirement import Requirement
+from .shelf import Shelf
+
+Floats = NDArray[np.float64]
+
+
+class Verdict(IntEnum):
+    """What may be promised of a part; larger is worse."""
+
+    FITS = 0
+    FITS_ON_TYPICALS = 1
+    CANNOT_SAY = 2
+    FAILS = 3
+
+    @property
+    def words(self) -> str:
+        return self.name.lower().replace("_", " ")
+
+
+class Status(IntEnum):
+    """The outcome of one check; larger is worse."""
+
+    PASS = 0
+    UNKNOWN = 1
+    FAIL = 2
+
+    @property
+    def word(self) -> str:
+        return self.name.lower()
+
+
+@dataclass(frozen=True, eq=False)
+class CheckColumn:
+    """One check over all parts. Shapes (n,)."""
+
+    name: str  # "base drive"
+    question: str  # the question it answers
+    unit: str  # SI unit of value and limit
+    value: Floats  # what the requirement demands of the part
+    limit: Floats  # what the part allows
+    headroom: Floats  # limit ÷ demand, or its mirror where the demand must be exceeded; 1 = at the limit
+    status: NDArray[np.int8]  # `Status`
+    evidence: Grades
+
+
+@dataclass(frozen=True, eq=False)
+class Ranking:
+    """Every part of a shelf judged under one requirement. All arrays have shape (n,)."""
+
+    requirement: Requirement
+    policy: str
+    shelf: Shelf
+    checks: tuple[CheckColumn, ...]
+    network: Mapping[str, Floats]  # "rb", "rb_low", "rb_high", "rbe" in Ω; NaN: none, or none possible
+    bounds: Mapping[str, Floats]  # names of the contract: "vce_on_max", …; NaN: cannot be stated
+    verdict: NDArray[np.int8]  # `Verdict`
+    evidence: Grades  # weakest figure of the verdict
+    worst: NDArray[np.int16]  # index in `checks` of the check that decides: failing, unknown or tightest
+    headroom: Floats  # of the tightest check, NaN when one is unknown
+    score: Floats  # overall desirability, 0…1; 0 unless the part fits
+    desirability: Mapping[str, Floats]  # criterion → 0…1
+    pareto: NDArray[np.bool_]  # nothing that fits is better in every criterion
+    order: NDArray[np.intp]  # indices of parts, best first
+
+    def count(self, verdict: Verdict) -> int:
+        """How many parts have this verdict."""
+        return int(np.count_nonzero(self.verdict == verdict))
+
+    def index(self, type_number: str) -> int:
+        """The row of the part called `type_number`. Raises KeyError."""
+        return self.shelf.index(type_number)
+
+
+@dataclass(frozen=True, slots=True)
+class Step:
+    """One line of a calculation: the relation in words, with its numbers, and the result."""
+
+    symbol: str  # what is computed, as printed: "IB min"
+    meaning: str
+    relation: str  # "(VOH min − VBE max) ÷ RB max"; empty for a value read from the sheet or requirement
+    numbers: str  # the same with this part's numbers
+    result: str  # "1.1 mA"
+    evidence: str  # word of the grade
+    source: str  # law or document the figure comes from
+
+
+@dataclass(frozen=True, slots=True)
+class CheckExplanation:
+    """One check of one part, with its working."""
+
+    name: str
+    question: str
+    status: str  # "pass", "fail", "unknown"
+    evidence: str
+    value: float | None
+    limit: float | None
+    unit: str
+    headroom: float | None
+    missing: tuple[str, ...]  # symbols to look up
+    says: str  # one sentence with the two numbers
+    steps: tuple[Step, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Explanation:
+    """Everything there is to say about one part under one requirement."""
+
+    part: str
+    structure: str
+    package: str
+    verdict: str
+    evidence: str
+    says: str  # the verdict in one sentence
+    network: Mapping[str, float | None]  # rb, rb_low, rb_high, rbe, tolerance
+    network_says: str
+    bounds: Mapping[str, float | None]
+    checks: tuple[CheckExplanation, ...]
+    cautions: tuple[str, ...]
+    notes: tuple[str, ...]  # defaults taken, allowances made
+    sources: tuple[str, ...]  # full references of the laws and sheets used
