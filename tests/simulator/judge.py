@@ -1,0 +1,260 @@
+"""What a given network really does: every device of a type at every corner that matters.
+
+The corners are simulated by ngspice (`simulate`) or, where thousands of networks are tried, by the solver of
+`gummel_poon` (`estimate`). Both take the same corners and give the same extremes.
+"""
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, fields, replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from . import spice
+from .circuits import Numbers
+from .gummel_poon import Devices, Floats, solve
+from .population import Type
+from .transient import Stage, switching
+
+TJ_CEILING = 250.0  # °C: beyond it the device is lost, and the model with it
+
+
+@dataclass(frozen=True, eq=False)
+class Circuits:
+    """Circuits to solve, seen from the emitter. Every array has shape (n,)."""
+
+    row: NDArray[np.intp]  # device of the type
+    t: Floats  # junction temperature, °C
+    vs: Floats
+    load: Floats  # Ω, or A where `constant`
+    vd: Floats  # base drive level
+    rb: Floats  # with the driver's own resistance; inf for an open driver
+    rbe: Floats  # inf without one
+    injected: Floats  # current into the base
+    constant: bool  # the load is a constant current
+    off: bool
+
+    def take(self, rows: NDArray[np.intp]) -> "Circuits":
+        """Some of the circuits."""
+        arrays = {one.name: getattr(self, one.name)[rows] for one in fields(self) if one.name not in ("constant", "off")}
+        return replace(self, **arrays)
+
+
+@dataclass(frozen=True, eq=False)
+class Points:
+    """Their operating points. Shapes (n,)."""
+
+    vbe: Floats
+    vce: Floats
+    ib: Floats
+    ic: Floats  # through the load
+    drive: Floats  # from the driver
+
+
+Simulator = Callable[[Devices, Circuits, str], Points]
+
+
+def by_solver(devices: Devices, c: Circuits, polarity: str) -> Points:
+    """The operating points by the fast solver."""
+    gb, gbe = 1 / c.rb, 1 / c.rbe
+
+    def boundary(vb: Floats, vc: Floats, ib: Floats, ic: Floats) -> tuple[Floats, Floats]:
+        drawn = c.load * np.tanh((c.vs - vc) / 0.05) if c.constant else (c.vs - vc) / c.load
+        return (c.vd - vb) * gb - vb * gbe + c.injected - ib, drawn - ic
+
+    point = solve(devices.take(c.row), c.t, boundary, off=c.vs if c.off else None)
+    bad = ~point.converged
+    values = [np.where(bad, np.nan, column) for column in (point.vbe, point.vce, point.ib, point.ic)]
+    return Points(*values, drive=(c.vd - values[0]) * gb)
+
+
+def by_ngspice(devices: Devices, c: Circuits, polarity: str, chunk: int = 40) -> Points:
+    """The operating points by ngspice, `chunk` circuits a run (each run is solved as one set of equations)."""
+    parts = [
+        _run(devices, c.take(np.arange(start, min(start + chunk, len(c.row)))), polarity)
+        for start in range(0, len(c.row), chunk)
+    ]
+    joined = {one.name: np.concatenate([getattr(part, one.name) for part in parts]) for one in fields(Points)}
+    return Points(**joined)
+
+
+def _run(devices: Devices, c: Circuits, polarity: str) -> Points:
+    sign = -1 if polarity == "pnp" else 1
+    rows, place = np.unique(c.row, return_inverse=True)
+    some = devices.take(rows)
+    leak = some.take(place).leakage(c.t) if c.off else np.zeros(len(c.row))
+    lines = spice.models(some, polarity)
+    for k in range(len(c.row)):
+        lines += spice.transistor(some, int(place[k]), str(k), float(c.t[k]), sign, float(leak[k]))
+        lines += [f"vs{k} s{k} 0 {sign * c.vs[k]:.9g}", f"vd{k} d{k} 0 {sign * c.vd[k]:.9g}"]
+        if c.constant:
+            lines.append(f"bl{k} s{k} c{k} i={sign * c.load[k]:.9g}*tanh({sign}*v(s{k},c{k})/0.05)")
+        else:
+            lines.append(f"rl{k} s{k} c{k} {c.load[k]:.9g}")
+        for name, ends, ohms in (("rb", f"d{k} b{k}", c.rb[k]), ("rz", f"b{k} 0", c.rbe[k])):
+            if np.isfinite(ohms):
+                lines.append(f"{name}{k} {ends} {ohms:.9g}")
+        if not np.isfinite(c.rb[k]):
+            lines.append(f"rd{k} d{k} 0 1k")
+        if c.injected[k]:
+            lines.append(f"ij{k} 0 b{k} {sign * c.injected[k]:.9g}")
+    raw = spice.run("corners", lines, ".op")
+
+    def read(name: str) -> Floats:
+        return sign * np.array([raw[name.format(k)][-1] for k in range(len(c.row))])
+
+    vb, vc, ic = read("v(b{})"), read("v(c{})"), -read("i(vs{})")
+    drive = (c.vd - vb) / c.rb
+    return Points(vb, vc, drive + c.injected - vb / c.rbe, ic, drive)
+
+
+def network_corners(n: Numbers, rb: float, rbe: float | None) -> tuple[tuple[float, float], tuple[float, float]]:
+    """(RB with the driver's resistance, RBE) where the base gets least, and where it gets most."""
+    low, high = 1 - n.tolerance, 1 + n.tolerance
+    shunt = np.inf if rbe is None else rbe
+    return (rb * high + n.drive_resistance, shunt * low), (rb * low + n.drive_resistance, shunt * high)
+
+
+def on_corners(kind: Type, n: Numbers, rb: float, rbe: float | None, rows: NDArray[np.intp]) -> Circuits:
+    """Supply × drive × load × (coldest, hottest), devices last; the hot ones start at ambient."""
+    weak, strong = network_corners(n, rb, rbe)
+    table = []
+    for t in n.ambient:
+        for vs in n.supply:
+            for level, (r1, r2) in zip(n.drive, (weak, strong), strict=True):
+                vd = vs - level if n.position == "high side" else level
+                for load in n.current if n.load == "constant current" else n.resistance:
+                    table.append((t, vs, load, vd, r1, r2))
+    columns = np.array(table).T.repeat(len(rows), axis=1)
+    row = np.tile(rows, len(table))
+    zero = np.zeros(len(row))
+    return Circuits(row, *columns, zero, constant=n.load == "constant current", off=False)
+
+
+def off_corners(kind: Type, n: Numbers, rb: float, rbe: float | None, rows: NDArray[np.intp], tj: Floats) -> Circuits:
+    """The two resistor corners that can be worst, at the highest supply; `tj` is per row, shape (len(rows),)."""
+    shunt = np.inf if rbe is None else rbe * (1 + n.tolerance)
+    heavy = n.current[1] if n.load == "constant current" else n.resistance[0]
+    size = len(rows)
+    values = [np.inf] if n.off_open else [rb * (1 + s * n.tolerance) + n.drive_resistance for s in (-1, 1)]
+    full = lambda value: np.full(size * len(values), value)  # noqa: E731
+    return Circuits(
+        np.tile(rows, len(values)), np.tile(tj, len(values)), full(n.supply[1]), full(heavy), full(n.off_level),
+        np.repeat(values, size), full(shunt), full(n.off_injected), n.load == "constant current", True,
+    )  # fmt: skip
+
+
+def thermal_resistance(kind: Type, n: Numbers) -> float:
+    """Junction to ambient, K/W."""
+    return kind.rth_ja if np.isnan(n.heatsink) else kind.rth_jc + n.heatsink
+
+
+def settle(kind: Type, n: Numbers, c: Circuits, simulator: Simulator, turns: int = 12) -> tuple[Circuits, Points]:
+    """The on corners with the hot half at the junction temperature that its own loss brings about."""
+    rth = thermal_resistance(kind, n) * n.duty_cycle
+    hot = c.t == n.ambient[1]
+    for _ in range(turns):
+        p = simulator(kind.devices, c, kind.polarity)
+        loss = np.nan_to_num(p.vce * p.ic + p.vbe * p.ib)
+        t = np.where(hot, np.minimum(n.ambient[1] + rth * loss, TJ_CEILING), c.t)
+        moved = np.abs(t - c.t).max()
+        c = replace(c, t=t)
+        if moved < 0.1:
+            break
+    return c, p
+
+
+def extremes(kind: Type, n: Numbers, on: Circuits, p: Points, off: Points) -> dict[str, float]:
+    """The worst of every quantity the engine bounds, by the engine's names. NaN where a point did not solve."""
+    loss = (p.vce * p.ic + p.vbe * p.ib) * n.duty_cycle
+    with np.errstate(divide="ignore", invalid="ignore"):
+        forced = np.where(p.ib > 0, p.ic / p.ib, np.inf)
+    return {
+        "vce_on_max": float(p.vce.max()),
+        "ic_on_max": float(p.ic.max()),
+        "ic_on_min": float(p.ic.min()),
+        "ib_on_min": float(p.ib.min()),
+        "ib_on_max": float(p.ib.max()),
+        "drive_current_max": float(p.drive.max()),
+        "forced_beta_max": float(forced.max()),
+        "power_max": float(loss.max()),
+        "tj_max": float(on.t.max()),
+        "ic_off_max": float(off.ic.max()),
+        "vce_off_max": float(n.supply[1] + n.overshoot),
+    }
+
+
+def judge(
+    kind: Type, n: Numbers, rb: float, rbe: float | None, simulator: Simulator, rows: NDArray[np.intp] | None = None
+) -> dict[str, float]:
+    """Extremes of one network over the devices of a type (or `rows` of them) and all corners."""
+    if rows is None:
+        rows = np.arange(len(kind.devices))
+    c, p = settle(kind, n, on_corners(kind, n, rb, rbe, rows), by_solver)
+    if simulator is not by_solver:  # the solver's temperatures are a good start; ngspice has the last word
+        c, p = settle(kind, n, c, simulator, turns=1 if _steady(kind, n, c, p) else 3)
+    tj = c.t.reshape(-1, len(rows)).max(axis=0)
+    off = simulator(kind.devices, off_corners(kind, n, rb, rbe, rows, tj), kind.polarity)
+    return extremes(kind, n, c, p, off)
+
+
+def _steady(kind: Type, n: Numbers, c: Circuits, p: Points) -> bool:
+    return bool(c.t.max() < TJ_CEILING)
+
+
+def switching_times(kind: Type, n: Numbers, rb: float, rbe: float | None) -> dict[str, float]:
+    """The longest turn-on and turn-off of a resistive low- or high-side switch over all devices, by ngspice.
+
+    Turn-on is slowest where the drive is weak and the load heavy, turn-off where the drive was strong and the load
+    light; both are tried cold and hot.
+    """
+    assert n.load == "resistive"
+    weak, strong = network_corners(n, rb, rbe)
+    stages = []
+    rows = range(len(kind.devices))
+    for level, (r1, r2), load in zip(n.drive, (weak, strong), n.resistance, strict=True):
+        for t, vs in ((n.ambient[0], n.supply[0]), (n.ambient[1], n.supply[1])):
+            vd = vs - level if n.position == "high side" else level
+            stages += [Stage(row, t, vs, load, n.off_level, vd, r1, r2) for row in rows]
+    on, off = switching(kind.devices, stages)
+    return {"t_on_max": float(on.max()), "t_off_max": float(off.max())}
+
+
+LOW_BOUNDS = ("ic_on_min", "ib_on_min")
+
+
+def broken_bounds(bounds: Mapping[str, float | None], found: Mapping[str, float], slack: float = 1e-3) -> list[str]:
+    """Names of the bounds that the simulation goes beyond; a bound that is not stated cannot be broken.
+
+    `slack` is the share allowed for the simulator's own convergence; temperatures are compared in kelvin above 0 °C.
+    """
+    broken = []
+    for name, value in found.items():
+        bound = bounds.get(name)
+        if bound is None or np.isnan(bound):
+            continue
+        excess = (bound - value) if name in LOW_BOUNDS else (value - bound)
+        if np.isnan(value) or excess > slack * abs(bound) + 1e-12:
+            broken.append(name)
+    return broken
+
+
+def shortfalls(kind: Type, n: Numbers, found: Mapping[str, float], icm: float, ib_max: float) -> list[str]:
+    """What the network misses of the requirement and the ratings; empty when it does the job.
+
+    `icm` is the peak-current rating (the continuous one where there is none), `ib_max` that of the base (inf).
+    """
+    saturated = 2.5 if kind.darlington else 1.0
+    limit = saturated if np.isnan(n.on_voltage) else n.on_voltage
+    tj_limit = min(kind.tj_max, n.junction if not np.isnan(n.junction) else np.inf)
+    asked = {
+        "on voltage": found["vce_on_max"] <= limit,
+        "drive current": found["drive_current_max"] <= n.drive_current,
+        "collector current": found["ic_on_max"] <= kind.current and found["ic_on_max"] * n.inrush <= icm,
+        "base current": found["ib_on_max"] <= ib_max,
+        "junction": found["tj_max"] <= tj_limit,
+        "off current": found["ic_off_max"] <= n.off_current,
+        "off voltage": found["vce_off_max"] <= kind.vceo,
+        "turn-off time": np.isnan(n.turn_off) or found.get("t_off_max", np.inf) <= n.turn_off,
+    }
+    return [name for name, good in asked.items() if not good]
