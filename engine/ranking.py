@@ -3,6 +3,7 @@
 from collections.abc import Mapping
 from dataclasses import dataclass
 from enum import IntEnum
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -69,8 +70,17 @@ class Ranking:
     headroom: Floats  # of the tightest check, NaN when one is unknown
     score: Floats  # overall desirability, 0…1; 0 unless the part fits
     desirability: Mapping[str, Floats]  # criterion → 0…1
-    pareto: NDArray[np.bool_]  # nothing that fits is better in every criterion
     order: NDArray[np.intp]  # indices of parts, best first
+
+    @cached_property
+    def pareto(self) -> NDArray[np.bool_]:
+        """Parts that fit and that no other fitting part beats in one criterion without losing in another."""
+        from .desirability import pareto_front
+
+        fitting = np.flatnonzero(self.verdict <= Verdict.FITS_ON_TYPICALS)
+        front = np.zeros(len(self.verdict), dtype=bool)
+        front[fitting] = pareto_front(np.column_stack([d[fitting] for d in self.desirability.values()]))
+        return front
 
     def count(self, verdict: Verdict) -> int:
         """How many parts have this verdict."""

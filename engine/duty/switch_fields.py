@@ -2,6 +2,7 @@
 
 from dataclasses import dataclass
 
+from ..policy import POLICIES
 from ..requirement import Field, Problem, Value
 
 LOADS = ("resistive", "constant current", "coil", "lamp")
@@ -92,7 +93,7 @@ FIELDS: tuple[Field, ...] = (
     Field("choice.overdrive", "Overdrive", "", "Base current over the least that the gain floor needs", default=2.0,
           low=1, high=50),
     Field("choice.quantity", "Pieces", "", "How many are wanted", default=1.0, low=0, high=1e6),
-    Field("choice.derating", "Derating", "", "Derating policy", default="none", words=True),
+    Field("choice.derating", "Derating", "", "Derating policy", default="none", choices=tuple(POLICIES), words=True),
     Field("choice.packages", "Packages", "", "Packages that will do; empty for any", default=(), many=True),
 )  # fmt: skip
 

@@ -1,0 +1,188 @@
+"""Saturation: which forced beta the sheets allow, and the on-voltage they promise.
+
+Every saturation test (and the line between two neighbours) that reaches the collector current is a witness.
+A witness promises its voltage at its own forced beta, and at a larger one as far as the gain floor and the
+laws below carry. Witnesses combine by the kindest, since each is true.
+"""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from ..formula import formula
+from .constants import ROOM, thermal_voltage
+
+Floats = NDArray[np.float64]
+Mask = NDArray[np.bool_]
+
+HOT_RATE = 0.006  # 1/K, source "saturation hot"
+LEAST_REVERSE_BETA = 0.1  # of a transistor in use: bounds the intrinsic part of VCE(sat)
+GUARD = 0.5  # share of the gain floor up to which weak gain cannot undo a saturation limit
+
+
+@dataclass(frozen=True, eq=False)
+class Witnesses:
+    """Saturation limits that reach one collector current. Shapes (m, n), NaN where there is none."""
+
+    v: Floats  # promised at forced beta `beta`, 25 °C
+    v_light: Floats  # the same for this lower current, while the gain is ample
+    beta: Floats
+    beta_cold: Floats  # forced beta that the witness itself proves at the coldest and at this current
+    gain_guard: Floats  # (n,) forced beta up to which the gain is ample; NaN: unknown
+    gain_low: Floats  # (n,) gain floor at low VCE, coldest; NaN: unknown
+    v_gain: Floats  # (n,) the VCE from which that floor holds
+    stretch: Mask  # (n,) a plain small type, whose collector resistance does not depend on the drive
+
+
+def witnesses(
+    ic: float,
+    sat_ic: Floats,
+    sat_ib: Floats,
+    sat_v: Floats,
+    cold: Floats,
+    slope_below: Floats,
+    gain_guard: Floats,
+    gain_low: Floats,
+    v_gain: Floats,
+    stretch: Mask,
+) -> Witnesses:
+    """What the tests (k, n), in rising IC, say at collector current `ic`.
+
+    `cold` (n,) is the factor from 25 °C to the coldest gain, `slope_below` how the gain falls with IC.
+    """
+    intrinsic = float(thermal_voltage(ROOM)) * np.log((1 + 11 / LEAST_REVERSE_BETA) / (1 - GUARD))
+    v, light, beta, beta_cold = [], [], [], []
+    for i, (ic_t, ib_t, v_t) in enumerate(zip(sat_ic, sat_ib, sat_v, strict=True)):
+        reaches = ic <= ic_t * (1 + 1e-9)
+        ratio = np.where(reaches, ic / ic_t, np.nan)
+        v.append(np.where(reaches, v_t, np.nan))
+        # the intrinsic part is bounded, the ohmic part shrinks with the current
+        light.append(np.minimum(v[-1], intrinsic + v_t * ratio))
+        beta.append(np.where(reaches, ic_t / ib_t, np.nan))
+        beta_cold.append(beta[-1] * cold * np.minimum(ratio, 1.0) ** slope_below)
+        if i == 0:
+            continue
+        low_ic, low_ib, low_v = sat_ic[i - 1], sat_ib[i - 1], sat_v[i - 1]
+        share = np.where((low_ic < ic) & (ic < ic_t), (ic - low_ic) / (ic_t - low_ic), np.nan)
+        v.append(np.maximum(low_v, low_v + share * (v_t - low_v)))
+        light.append(v[-1])
+        beta.append(ic / (low_ib + share * (ib_t - low_ib)))
+        beta_cold.append(beta[-1] * cold)
+    stacked = (np.stack(rows) for rows in (v, light, beta, beta_cold))
+    return Witnesses(*stacked, gain_guard, gain_low, v_gain, stretch)
+
+
+def beta_allowed(w: Witnesses, v_most: Floats) -> Floats:
+    """The largest forced beta at which some witness promises at most `v_most` V at 25 °C. (n,)
+
+    Where the witnesses reach the current but none promises so little, the one with the least voltage counts:
+    the on-voltage will then be found too high. NaN where no witness reaches the current.
+    """
+    best = _beta_for(w, v_most)
+    none = np.isinf(best)
+    if none.any():
+        least = np.min(np.where(np.isnan(w.v), np.inf, w.v), axis=0)
+        best = np.where(none, _beta_for(w, least), best)
+    return np.where(np.isinf(best), np.nan, best)
+
+
+def _beta_for(w: Witnesses, v_most: Floats) -> Floats:
+    vt = float(thermal_voltage(ROOM))
+    best = np.full(w.v.shape[1], -np.inf)
+    guard = np.where(np.isnan(w.gain_guard), -np.inf, w.gain_guard)
+    for v, light, beta, proven in zip(w.v, w.v_light, w.beta, w.beta_cold, strict=True):
+        ample = np.minimum(beta, guard)
+        best = np.where((light <= v_most) & (ample > best), ample, best)
+        best = np.where((v <= v_most) & (proven > best), proven, best)
+        stretched = np.minimum(guard, (beta + 1) * np.exp((v_most - light) / vt) / 2 - 1)
+        best = np.where(w.stretch & (stretched > beta) & (stretched > best), stretched, best)
+        share = np.clip((v_most - v) / (w.v_gain - v), 0.0, 1.0)
+        chord = 1 / (1 / proven - share * (1 / proven - 1 / w.gain_low))
+        usable = (v <= v_most) & (w.v_gain > v) & (w.gain_low > proven)
+        best = np.where(usable & (chord > best), chord, best)
+    return best
+
+
+def v_promised(w: Witnesses, beta_forced: Floats) -> Floats:
+    """The least VCE(sat) bound at 25 °C that some witness promises at `beta_forced`. (n,), NaN: none. [V]"""
+    vt = float(thermal_voltage(ROOM))
+    best = np.full(w.v.shape[1], np.inf)
+    slack = 1 + 1e-9  # a network chosen for exactly the allowed beta is allowed
+    guard = np.where(np.isnan(w.gain_guard), -np.inf, w.gain_guard) * slack
+    for v, light, beta, proven in zip(w.v, w.v_light, w.beta, w.beta_cold, strict=True):
+        ample = beta_forced <= np.minimum(beta * slack, guard)
+        best = np.where(ample & (light < best), light, best)
+        best = np.where((beta_forced <= proven * slack) & (v < best), v, best)
+        stretched = light + vt * np.log(2 * (beta_forced + 1) / (beta + 1))
+        usable = w.stretch & (beta_forced > beta) & (beta_forced <= guard)
+        best = np.where(usable & (stretched < best), stretched, best)
+        share = (1 / proven - 1 / beta_forced) / (1 / proven - 1 / w.gain_low)
+        chord = v + (w.v_gain - v) * share
+        usable = (share > 0) & (share <= slack) & (w.v_gain > v) & (w.gain_low > proven)
+        best = np.where(usable & (chord < best), chord, best)
+    return np.where(np.isinf(best), np.nan, best)
+
+
+@formula("VCE(sat)", "V", "on-voltage that the saturation limits promise at 25 °C",
+         words="the least of the part's VCE(sat) limits (and lines between neighbours) that reach IC; beyond a test's "
+               "own IC ÷ IB only as far as half the cold gain floor, with VT·ln(2·(β + 1) ÷ (β(test) + 1)) added, or on "
+               "the line to a gain stated at low VCE",
+         source="ebers-moll")  # fmt: skip
+def saturation_at_room(**_: Floats) -> Floats:
+    """Traced only: see `v_promised`."""
+    raise NotImplementedError
+
+
+@formula("forced β allowed", "", "largest IC ÷ IB at which saturation is promised",
+         words="from the part's VCE(sat) limits that reach IC, its gain floor at low VCE at the coldest, and the "
+               "on-voltage wanted",
+         source="ebers-moll")  # fmt: skip
+def beta_at_room(**_: Floats) -> Floats:
+    """Traced only: see `beta_allowed`."""
+    raise NotImplementedError
+
+
+@formula("hot factor", "", "growth of the on-voltage from 25 °C to the hottest junction",
+         text="1 + 0.006 * max(TJ - 25, 0)", source="saturation hot")  # fmt: skip
+def hot_factor(TJ: Floats) -> Floats:
+    """Factor on VCE(sat) at `TJ` °C.
+
+    >>> round(float(hot_factor.raw(125.0)), 2)
+    1.6
+    """
+    return 1 + HOT_RATE * np.maximum(TJ - ROOM, 0)
+
+
+@formula("VCE on max", "V", "highest voltage across the switch when on",
+         text="VCE_sat * hot + cold_rise", source="saturation hot")  # fmt: skip
+def on_voltage(VCE_sat: Floats, hot: Floats, cold_rise: Floats) -> Floats:
+    """On-voltage over temperature; `cold_rise` is a Darlington's junction growing when cold. [V]
+
+    >>> round(float(on_voltage.raw(0.4, 1.45, 0.0)), 2)
+    0.58
+    """
+    return VCE_sat * hot + cold_rise
+
+
+def vce_sat_ebers_moll(beta_forced: Floats, beta_f: Floats, beta_r: Floats, t: Floats) -> Floats:
+    """VCE(sat) of the intrinsic transistor, no ohmic part. [V] Source: "ebers-moll".
+
+    >>> round(float(vce_sat_ebers_moll(10.0, 100.0, 1.0, 25.0)) * 1e3, 1)
+    66.6
+    """
+    numerator = 1 + (beta_forced + 1) / beta_r
+    return thermal_voltage(t) * np.log(numerator / (1 - beta_forced / beta_f))
+
+
+def operating_point(
+    drive: float, r_base: float, supply: float, r_collector: float, hfe: float, vbe: float, vce_sat: float = 0.1
+) -> tuple[float, float, bool]:
+    """Base current, collector current and whether it is saturated, for one transistor of known gain.
+
+    The collector current is the smaller of hFE·IB and what the load lets through: more base voltage
+    changes nothing once the load limits. [A, A, -] Source: "circuit law".
+    """
+    ib = max(drive - vbe, 0.0) / r_base
+    cap = (supply - vce_sat) / r_collector
+    return ib, min(hfe * ib, cap), hfe * ib >= cap
