@@ -23,6 +23,17 @@ SERIES: dict[str, Floats] = _table()
 """The values of one decade, 1 ≤ value < 10, by series name."""
 
 
+_DECADES = range(-6, 13)
+
+
+def _ladder(series: str) -> Floats:
+    """Every value of a series from 1 µΩ to 10 TΩ, each the float nearest to its decimal."""
+    return np.array([float(f"{value:.2f}e{decade}") for decade in _DECADES for value in SERIES[series]])
+
+
+_LADDERS = {name: _ladder(name) for name in SERIES}
+
+
 def step(series: str) -> float:
     """The largest ratio between neighbours of a series."""
     values = np.append(SERIES[series], 10.0)
@@ -31,12 +42,24 @@ def step(series: str) -> float:
 
 def at_least(value: Floats, series: str) -> Floats:
     """The smallest preferred value not below `value` (above zero). Same shape; NaN and infinity travel."""
-    return _round(value, series, up=True)
+    ladder, usable, first, safe = _place(value, series)
+    safe = safe * (1 - _SAME)
+    found = ladder[first + 2]
+    for step_up in (1, 0, -1):
+        candidate = ladder[first + step_up]
+        found = np.where(candidate >= safe, candidate, found)
+    return np.where(usable, found, value)
 
 
 def at_most(value: Floats, series: str) -> Floats:
     """The largest preferred value not above `value` (above zero). Same shape; NaN and infinity travel."""
-    return _round(value, series, up=False)
+    ladder, usable, first, safe = _place(value, series)
+    safe = safe * (1 + _SAME)
+    found = ladder[first - 1]
+    for step_up in (0, 1, 2):
+        candidate = ladder[first + step_up]
+        found = np.where(candidate <= safe, candidate, found)
+    return np.where(usable, found, value)
 
 
 def nearest(value: Floats, series: str) -> Floats:
@@ -46,20 +69,15 @@ def nearest(value: Floats, series: str) -> Floats:
         return np.where(value * value < low * high, low, high)
 
 
-def _round(value: Floats, series: str, up: bool) -> Floats:
-    """Rounding one way; a value that equals a preferred one to 1e-9 stays where it is."""
-    table = np.concatenate([SERIES[series], [10.0]])
+_SAME = 1e-9  # a value this close to a preferred one is that one
+
+
+def _place(value: Floats, series: str) -> tuple[Floats, NDArray[np.bool_], NDArray[np.intp], Floats]:
+    """The ladder, where rounding makes sense, and a rung at most one away from the right one."""
+    ladder, per_decade = _LADDERS[series], len(SERIES[series])
     value = np.asarray(value, dtype=np.float64)
-    usable = np.isfinite(value) & (value > 0)
+    usable = (value > ladder[2]) & (value < ladder[-4])  # False for NaN, infinity and what is not above zero
     safe = np.where(usable, value, 1.0)
-    decade = np.floor(np.log10(safe))
-    scale = 10.0**decade
-    mantissa = safe / scale
-    if up:
-        place = np.searchsorted(table, mantissa * (1 - 1e-9), side="left")
-    else:
-        place = np.searchsorted(table, mantissa * (1 + 1e-9), side="right") - 1
-    place = np.clip(place, 0, len(table) - 1)
-    # made by division where that is exact, so that 4.7 kΩ is 4700 and not 4700.000000000001
-    rounded = np.where(decade >= 0, np.round(table[place] * 100) * scale / 100, np.round(table[place] * 100) / (100 / scale))
-    return np.where(usable, rounded, value)
+    # the values lie within one rung of the even logarithmic ladder: no search is needed
+    first = np.floor(np.log10(safe) * per_decade).astype(np.intp) - _DECADES[0] * per_decade
+    return ladder, usable, first, safe

@@ -5,7 +5,7 @@ and large enough for the driver and the base. RBE must hold the base down agains
 low level when hot, and be large enough for the drive to pay for it.
 """
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, fields, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -36,6 +36,10 @@ class Need:
     ib: Floats
     vbe: Floats  # highest VBE at that base current, coldest
 
+    def take(self, rows: NDArray[np.intp]) -> "Need":
+        """The drive that some of the parts need."""
+        return replace(self, ib=self.ib[rows], vbe=self.vbe[rows])
+
 
 @dataclass(frozen=True, eq=False)
 class Needs:
@@ -50,6 +54,16 @@ class Needs:
     ib_limit: Floats
     leak: Floats
     v_base_allowed: Floats
+
+    def take(self, rows: NDArray[np.intp]) -> "Needs":
+        """What some of the parts need, for choosing their network: the witnesses stay behind."""
+        cut = {one.name: getattr(self, one.name) for one in fields(self)}
+        for name, value in cut.items():
+            if isinstance(value, np.ndarray):
+                cut[name] = value[rows]
+        cut["corners"] = tuple(one.take(rows) for one in self.corners)
+        cut["inrush"] = None if self.inrush is None else self.inrush.take(rows)
+        return Needs(**cut)
 
     @property
     def drives(self) -> tuple[Need, ...]:
@@ -244,22 +258,36 @@ def _turned_off_at_least(sit: Situation, p: Prepared, n: Needs, plain: Network) 
 
 
 def _with_rbe(sit: Situation, p: Prepared, n: Needs, plain: Network) -> Network:
-    """RB as large as leaves RBE a comfortable interval; else where that is widest; else the plain network."""
+    """RB as large as leaves RBE a comfortable interval; else where that is widest; else a part that only turns off."""
+    best = _turned_off_at_least(sit, p, n, plain)
+    rows = np.flatnonzero(plain.rb_low <= plain.rb_high)  # elsewhere no drive can pay for anything
+    rb, rbe = _comfortable(sit, n.take(rows), plain.rb_low[rows], plain.rb_high[rows])
+    chosen_rb, chosen_rbe = best.rb.copy(), best.rbe.copy()
+    found = ~np.isnan(rb)
+    chosen_rb[rows[found]], chosen_rbe[rows[found]] = rb[found], rbe[found]
+    low, high = window(sit, p, n, chosen_rbe)
+    return Network(chosen_rb, chosen_rbe, low, high)
+
+
+def _comfortable(sit: Situation, n: Needs, low: Floats, high: Floats) -> tuple[Floats, Floats]:
+    """RB and RBE for parts whose window is open; NaN where no preferred pair does both."""
     series = sit.requirement.word("resistors.series")
     comfortable = 1.5 * preferred.step(series)
-    best = _turned_off_at_least(sit, p, n, plain)
-    widest = np.ones(len(p))
+    rb, least_kept, most_kept = (np.full(len(low), np.nan) for _ in range(3))
+    widest = np.zeros(len(low))
+    ends = (preferred.at_least(low, series), preferred.at_most(high, series))
     for place in PLACES:
-        rb = at_place(plain.rb_low, plain.rb_high, place, series)
-        least, most = rbe_interval(sit, n, rb)
-        least_value, most_value = preferred.at_least(least, series), preferred.at_most(most, series)
-        width = np.where(np.isfinite(least) & (least_value <= most_value), most / least, 0.0)
-        better = (width >= widest * (1 - 1e-12)) & (widest < comfortable) & (rb > 0)
-        middle = np.where(np.isinf(most), least_value, _inside(least, most, series))
-        best = best.where(better, Network(rb, middle, plain.rb_low, plain.rb_high))
+        tried = at_place(low, high, place, series, ends)
+        least, most = rbe_interval(sit, n, tried)
+        possible = np.isfinite(least) & (preferred.at_least(least, series) <= most)
+        width = np.where(possible, most / least, 0.0)
+        better = (width > widest) & (widest < comfortable)
+        rb = np.where(better, tried, rb)
+        least_kept, most_kept = np.where(better, least, least_kept), np.where(better, most, most_kept)
         widest = np.where(better, width, widest)
-    low, high = window(sit, p, n, best.rbe)
-    return Network(best.rb, best.rbe, low, high)
+    # a drive that leaves RBE free is still given one it pays for easily
+    middle = _inside(least_kept, np.minimum(most_kept, least_kept * 10), series)
+    return rb, middle
 
 
 def stiffest(sit: Situation, p: Prepared, n: Needs, plain: Network, place: float) -> Network:
@@ -285,21 +313,27 @@ def rbe_interval(sit: Situation, n: Needs, rb: Floats) -> tuple[Floats, Floats]:
     return least, most
 
 
-def at_place(low: Floats, high: Floats, place: float, series: str) -> Floats:
-    """The preferred value at a place (0 lowest, 1 highest) of a window on a ratio scale, inside it if one is."""
+def at_place(
+    low: Floats, high: Floats, place: float, series: str, ends: tuple[Floats, Floats] | None = None
+) -> Floats:
+    """The preferred value at a place (0 lowest, 1 highest) of a window on a ratio scale, inside it if one is.
+
+    `ends` are the lowest and the highest preferred value inside, where the caller already has them.
+    """
     spread = np.where((high > low) & (low > 0), high / np.where(low > 0, low, 1.0), 1.0)
     start = np.where(low > 0, low, high)
     wanted = preferred.nearest(start * spread**place, series)
-    return np.where(wanted < low, preferred.at_least(low, series), np.where(wanted > high, preferred.at_most(high, series), wanted))
+    lowest, highest = ends or (preferred.at_least(low, series), preferred.at_most(high, series))
+    return np.where(wanted < low, lowest, np.where(wanted > high, highest, wanted))
 
 
 def _inside(low: Floats, high: Floats, series: str) -> Floats:
     """The preferred value in the middle of a window; where it is empty the largest that serves the base."""
-    open_ended = np.isinf(high)
-    top = np.where(open_ended, low * 10, high)
+    top = np.where(np.isinf(high), low * 10, high)
     bottom = np.where(low > 0, low, top / 10)
-    middle = at_place(bottom, top, 0.5, series)
-    serves = preferred.at_most(high, series)
-    empty = preferred.at_least(bottom, series) > top
-    fallback = np.where(np.isfinite(serves) & (serves > 0), serves, preferred.at_least(low, series))
+    ends = (preferred.at_least(bottom, series), preferred.at_most(top, series))
+    middle = at_place(bottom, top, 0.5, series, ends)
+    serves = np.where(np.isinf(high), ends[0], ends[1])
+    empty = ends[0] > top
+    fallback = np.where(np.isfinite(serves) & (serves > 0), serves, ends[0])
     return np.where(empty | np.isnan(top), fallback, middle)
