@@ -155,7 +155,7 @@ def _current(values: dict[str, Value]) -> float:
 
 def _load(values: dict[str, Value], rng: np.random.Generator, supply: float) -> None:
     kind = str(rng.choice(["resistive", "constant current", "coil", "lamp"], p=[0.45, 0.2, 0.25, 0.1]))
-    current = float(np.exp(rng.uniform(np.log(5e-3), np.log(0.08 if kind == "lamp" else 1.5))))
+    current = float(np.exp(rng.uniform(np.log(5e-3), np.log(0.08 if kind == "lamp" else 0.8))))
     values["load.kind"] = kind
     values["load.tolerance"] = float(rng.choice([0.0, 0.05, 0.1]))
     if kind == "constant current" or rng.random() < 0.3:

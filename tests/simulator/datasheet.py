@@ -22,14 +22,14 @@ UNITS = {"hFE": "", "TJ": "degC", "PD": "W", "RthJA": "K/W", "RthJC": "K/W", "to
 def gain(kind: Type, ic: float, vce: float, t: float = 25.0) -> Floats:
     """hFE of every device of a type, shape (n,)."""
     n = len(kind.devices)
-    point = solve(kind.devices, np.full(n, t), lambda vb, vc, ib, i: ((i - ic) / ic, vc - vce))
+    point = solve(kind.devices, np.full(n, t), lambda vb, vc, ib, i, _: ((i - ic) / ic, vc - vce))
     return np.where(point.converged, ic / point.ib, np.nan)
 
 
 def saturation(kind: Type, ic: float, ib: float, t: float = 25.0) -> tuple[Floats, Floats]:
     """VCE(sat) and VBE(sat) of every device, shapes (n,); inf where the device does not saturate."""
     n = len(kind.devices)
-    point = solve(kind.devices, np.full(n, t), lambda vb, vc, b, i: ((i - ic) / ic, (b - ib) / ib))
+    point = solve(kind.devices, np.full(n, t), lambda vb, vc, b, i, _: ((i - ic) / ic, (b - ib) / ib))
     return np.where(point.converged & (point.vce < 5), point.vce, np.inf), point.vbe
 
 

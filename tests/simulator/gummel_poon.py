@@ -128,88 +128,128 @@ class Points:
     converged: NDArray[np.bool_]
 
 
-Boundary = Callable[[Floats, Floats, Floats, Floats], tuple[Floats, Floats]]
-"""(vb, vc, ib, ic) → the two residuals of the outer circuit, each near 1 A or 1 V in scale."""
+Boundary = Callable[[Floats, Floats, Floats, Floats, NDArray[np.intp]], tuple[Floats, Floats]]
+"""(vb, vc, ib, ic, rows) → the two residuals of the outer circuit at the circuits `rows`, each near 1 in scale."""
+
+
+@dataclass(frozen=True, eq=False)
+class _Problem:
+    """Transistors at temperature with their leakage and outer circuit. Arrays of shape (n,)."""
+
+    stages: tuple[Mapping[str, Floats], ...]  # output transistor and, of a Darlington, the driver
+    shunts: tuple[Floats, ...]  # inner resistors across the two junctions of a Darlington
+    leak: Floats
+    boundary: Boundary
+    rows: NDArray[np.intp]
+
+    def keep(self, kept: NDArray[np.intp]) -> "_Problem":
+        """The problem cut down to the places `kept`."""
+        return _Problem(
+            tuple({name: column[kept] for name, column in stage.items()} for stage in self.stages),
+            tuple(column[kept] for column in self.shunts),
+            self.leak[kept],
+            self.boundary,
+            self.rows[kept],
+        )
+
+    def outer(self, x: Floats) -> tuple[Floats, Floats, Floats, Floats, list[Floats]]:
+        """Base and collector voltage, base and collector current, and the inner equations' errors."""
+        vb, vc, ib, ic, error = terminals(self.stages[0], x[:3])
+        if len(self.stages) == 1:
+            return vb, vc, ib - self.leak, ic + self.leak, [error]
+        vb1, vc1, ib1, ic1, error1 = terminals(self.stages[1], x[3:])
+        to_driver, to_output = self.shunts
+        middle = ib1 + ic1 + vb1 / to_driver + 0.7 * self.leak - ib - vb / to_output
+        errors = [error, error1, vb + vc1 - vc, middle]
+        return vb + vb1, vc, ib1 + vb1 / to_driver - 0.3 * self.leak, ic + ic1 + self.leak, errors
+
+    def residual(self, x: Floats) -> Floats:
+        """Everything that must vanish, shape (m, n)."""
+        vb, vc, ib, ic, errors = self.outer(x)
+        return np.stack([*errors, *self.boundary(vb, vc, ib, ic, self.rows)])
 
 
 def solve(devices: Devices, t: Floats, boundary: Boundary, *, off: Floats | None = None) -> Points:
     """Operating points at junction temperature `t`, shape (n,), under `boundary`.
 
-    `off` is the collector voltage of transistors that are known to be off: a better start for them.
+    `off` is the collector voltage of transistors that are known to be off: a better start for them, and they leak.
     """
-    stages = [at_temperature(devices.output, t)]
+    n = len(devices)
+    stages: list[Mapping[str, Floats]] = [at_temperature(devices.output, t)]
+    shunts: tuple[Floats, ...] = ()
     if devices.driver is not None:
-        stages.append(at_temperature(devices.driver, t))
-    leak = devices.leakage(t) if off is not None else np.zeros(len(devices))
-
-    def outer(x: Floats) -> tuple[Floats, Floats, Floats, Floats, list[Floats]]:
-        vb, vc, ib, ic, error = terminals(stages[0], x[:3])
-        if devices.driver is None:
-            return vb, vc, ib - leak, ic + leak, [error]
         assert devices.r_output is not None and devices.r_driver is not None
-        vb1, vc1, ib1, ic1, error1 = terminals(stages[1], x[3:])
-        to_middle = ib1 + ic1 + vb1 / devices.r_driver + 0.7 * leak
-        middle = to_middle - ib - vb / devices.r_output
-        errors = [error, error1, (vb + vc1 - vc), middle]
-        return vb + vb1, vc, ib1 + vb1 / devices.r_driver - 0.3 * leak, ic + ic1 + leak, errors
-
-    def residual(x: Floats) -> Floats:
-        vb, vc, ib, ic, errors = outer(x)
-        return np.stack([*errors, *boundary(vb, vc, ib, ic)])
-
-    vt = stages[0]["VT"]
-    guess = _start(vt, len(stages), off)
-    x, converged = _newton(residual, guess, vt)
-    vb, vc, ib, ic, _ = outer(x)
+        stages.append(at_temperature(devices.driver, t))
+        shunts = (devices.r_driver, devices.r_output)
+    leak = devices.leakage(t) if off is not None else np.zeros(n)
+    problem = _Problem(tuple(stages), shunts, leak, boundary, np.arange(n))
+    x, converged = _newton(problem, _start(stages[0]["VT"], len(stages), off))
+    vb, vc, ib, ic, _ = problem.outer(x)
     return Points(vb, vc, ib, ic, converged)
 
 
 def _start(vt: Floats, stages: int, off: Floats | None) -> Floats:
-    base = 0.9 - 9 * (vt - 0.0187) if off is None else np.full_like(vt, 0.2)
     if off is None:
-        rows = [base, base - 0.15, base - 0.3]
-        rows2 = [base - 0.1, base - 0.8, base - 0.9]
+        base = 0.9 - 9 * (vt - 0.0187)
+        rows = [base, base - 0.15, base - 0.3, base - 0.1, base - 0.8, base - 0.9]
     else:
-        rows = [base, base - off, base - off]
-        rows2 = [base, 2 * base - off, 2 * base - off]
-    return np.stack(rows + (rows2 if stages == 2 else []))
+        base = np.full_like(vt, 0.2)
+        rows = [base, base - off, base - off, base, 2 * base - off, 2 * base - off]
+    return np.stack(rows[: 3 * stages])
 
 
-def _newton(residual: Callable[[Floats], Floats], x: Floats, vt: Floats) -> tuple[Floats, NDArray[np.bool_]]:
+def _newton(problem: _Problem, x: Floats) -> tuple[Floats, NDArray[np.bool_]]:
     """Newton's method; an unknown that swings to and fro may move less and less. x has shape (m, n)."""
     m, n = x.shape
-    longest = np.full((m, n), 0.2)  # V, the step that each unknown may take
-    before = np.zeros((m, n))
-    done = np.zeros(n, dtype=bool)
+    left = np.arange(n)
+    work, y = problem, x.copy()
+    longest, before = np.full((m, n), 0.2), np.zeros((m, n))  # V, the step that each unknown may take and has taken
     for turn in range(160):
+        vt = work.stages[0]["VT"]
         if turn in (50, 100):  # those still wandering start again: in the active region, then deep in saturation
-            afresh = np.zeros_like(x) + 0.6 - 0.0015 * (vt / vt.min() - 1)
-            afresh[1:] -= 1.5 if turn == 50 else 0.02
-            x = np.where(done, x, afresh)
-            longest = np.where(done, longest, 0.1)
-        change = _newton_step(residual, x)
-        swing = change * before < 0
-        longest = np.clip(np.where(swing, 0.4 * longest, 1.5 * longest), 1e-4, 40.0)
-        done = (np.abs(change) < 1e-7 * np.maximum(1.0, np.abs(x))).all(axis=0)
-        if done.all():
-            break
-        upwards = np.where((x > 0.5) & (change > 0), np.minimum(longest, 3 * vt), longest)
+            y = np.full_like(y, 0.6)
+            y[1:] -= 1.5 if turn == 50 else 0.02
+            longest = np.full_like(y, 0.1)
+        change = _newton_step(work, y)
+        longest = np.clip(np.where(change * before < 0, 0.4 * longest, 1.5 * longest), 1e-4, 40.0)
+        upwards = np.where((y > 0.5) & (change > 0), np.minimum(longest, 3 * vt), longest)
         before = np.clip(change, -longest, upwards)
-        x = x + before
-    return x, done
+        wandering = ~(np.abs(change) < 1e-7 * np.maximum(1.0, np.abs(y))).all(axis=0)
+        y = y + before
+        if wandering.sum() < 0.7 * len(left) or not wandering.any():
+            x[:, left] = y
+            kept = np.flatnonzero(wandering)
+            left, y, longest, before = left[kept], y[:, kept], longest[:, kept], before[:, kept]
+            if not len(left):
+                break
+            work = work.keep(kept)
+    else:
+        wandering = ~(np.abs(_newton_step(work, y)) < 1e-6).all(axis=0)
+        x[:, left] = y
+        left = left[wandering]
+    converged = np.ones(n, dtype=bool)
+    converged[left] = False
+    return x, converged
 
 
-def _newton_step(residual: Callable[[Floats], Floats], x: Floats) -> Floats:
+def _newton_step(problem: _Problem, x: Floats) -> Floats:
     m, n = x.shape
-    f = residual(x)
+    f = problem.residual(x)
     jacobian = np.empty((n, m, m))
     for k in range(m):
         moved = x.copy()
         step = 1e-7 * np.maximum(1.0, np.abs(x[k]) * 0.1)
         moved[k] += step
-        jacobian[:, :, k] = ((residual(moved) - f) / step).T
+        jacobian[:, :, k] = ((problem.residual(moved) - f) / step).T
     scale = np.abs(jacobian).max(axis=2)
-    scale[~(scale > 0)] = 1.0
-    jacobian = jacobian / scale[:, :, None] + 1e-13 * np.eye(m)
-    change = np.linalg.solve(jacobian, (-f.T / scale)[:, :, None])[:, :, 0].T
-    return np.where(np.isfinite(change), change, 0.0)
+    usable = np.isfinite(jacobian).all(axis=(1, 2)) & np.isfinite(f).all(axis=0) & (scale > 0).all(axis=1)
+    scale[~usable] = 1.0
+    jacobian[~usable] = np.eye(m)
+    f[:, ~usable] = 0.05
+    matrix, right = jacobian / scale[:, :, None], (-f.T / scale)[:, :, None]
+    for softening in (1e-13, 1e-9, 1e-5):  # a singular matrix only ever spoils a step, not the answer
+        try:
+            return np.asarray(np.linalg.solve(matrix + softening * np.eye(m), right)[:, :, 0].T)
+        except np.linalg.LinAlgError:
+            continue
+    return np.full_like(x, 0.05)

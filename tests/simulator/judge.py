@@ -10,6 +10,8 @@ from dataclasses import dataclass, fields, replace
 import numpy as np
 from numpy.typing import NDArray
 
+from engine.part import Part
+
 from . import spice
 from .circuits import Numbers
 from .gummel_poon import Devices, Floats, solve
@@ -58,9 +60,12 @@ def by_solver(devices: Devices, c: Circuits, polarity: str) -> Points:
     """The operating points by the fast solver."""
     gb, gbe = 1 / c.rb, 1 / c.rbe
 
-    def boundary(vb: Floats, vc: Floats, ib: Floats, ic: Floats) -> tuple[Floats, Floats]:
-        drawn = c.load * np.tanh((c.vs - vc) / 0.05) if c.constant else (c.vs - vc) / c.load
-        return (c.vd - vb) * gb - vb * gbe + c.injected - ib, drawn - ic
+    def boundary(
+        vb: Floats, vc: Floats, ib: Floats, ic: Floats, rows: NDArray[np.intp]
+    ) -> tuple[Floats, Floats]:
+        across = c.vs[rows] - vc
+        drawn = c.load[rows] * np.tanh(across / 0.05) if c.constant else across / c.load[rows]
+        return (c.vd[rows] - vb) * gb[rows] - vb * gbe[rows] + c.injected[rows] - ib, drawn - ic
 
     point = solve(devices.take(c.row), c.t, boundary, off=c.vs if c.off else None)
     bad = ~point.converged
@@ -164,7 +169,7 @@ def settle(kind: Type, n: Numbers, c: Circuits, simulator: Simulator, turns: int
     return c, p
 
 
-def extremes(kind: Type, n: Numbers, on: Circuits, p: Points, off: Points) -> dict[str, float]:
+def extremes(n: Numbers, on: Circuits, p: Points, off: Points) -> dict[str, float]:
     """The worst of every quantity the engine bounds, by the engine's names. NaN where a point did not solve."""
     loss = (p.vce * p.ic + p.vbe * p.ib) * n.duty_cycle
     with np.errstate(divide="ignore", invalid="ignore"):
@@ -187,19 +192,54 @@ def extremes(kind: Type, n: Numbers, on: Circuits, p: Points, off: Points) -> di
 def judge(
     kind: Type, n: Numbers, rb: float, rbe: float | None, simulator: Simulator, rows: NDArray[np.intp] | None = None
 ) -> dict[str, float]:
-    """Extremes of one network over the devices of a type (or `rows` of them) and all corners."""
+    """Extremes of one network over the devices of a type (or `rows` of them) and all corners, by `simulator`."""
     if rows is None:
         rows = np.arange(len(kind.devices))
     c, p = settle(kind, n, on_corners(kind, n, rb, rbe, rows), by_solver)
     if simulator is not by_solver:  # the solver's temperatures are a good start; ngspice has the last word
-        c, p = settle(kind, n, c, simulator, turns=1 if _steady(kind, n, c, p) else 3)
+        c, p = settle(kind, n, c, simulator, turns=2)
     tj = c.t.reshape(-1, len(rows)).max(axis=0)
     off = simulator(kind.devices, off_corners(kind, n, rb, rbe, rows, tj), kind.polarity)
-    return extremes(kind, n, c, p, off)
+    return _with_inrush(kind, n, c, extremes(n, c, p, off), simulator)
 
 
-def _steady(kind: Type, n: Numbers, c: Circuits, p: Points) -> bool:
-    return bool(c.t.max() < TJ_CEILING)
+def confirm(kind: Type, n: Numbers, rb: float, rbe: float | None) -> dict[str, float]:
+    """The same extremes by ngspice at those devices and corners only where the solver finds one of them."""
+    rows = np.arange(len(kind.devices))
+    c, p = settle(kind, n, on_corners(kind, n, rb, rbe, rows), by_solver)
+    off_c = off_corners(kind, n, rb, rbe, rows, c.t.reshape(-1, len(rows)).max(axis=0))
+    off = by_solver(kind.devices, off_c, kind.polarity)
+    beta = p.ic / np.maximum(p.ib, 1e-12)
+    worst = [p.vce.argmax(), p.ic.argmax(), p.ic.argmin(), p.ib.argmin(), p.ib.argmax(), p.drive.argmax(),
+             beta.argmax(), (p.vce * p.ic + p.vbe * p.ib).argmax(), c.t.argmax()]  # fmt: skip
+    unsolved = np.flatnonzero(np.isnan(p.vce))
+    c = c.take(np.unique([*worst, *unsolved]))
+    c, p = settle(kind, n, c, by_ngspice, turns=2)
+    off_c = off_c.take(np.unique([off.ic.argmax(), *np.flatnonzero(np.isnan(off.ic))]))
+    off = by_ngspice(kind.devices, off_c, kind.polarity)
+    return _with_inrush(kind, n, c, extremes(n, c, p, off), by_ngspice)
+
+
+def _with_inrush(
+    kind: Type, n: Numbers, c: Circuits, found: dict[str, float], simulator: Simulator
+) -> dict[str, float]:
+    if n.inrush > 1:
+        found["inrush_ok"] = float(_survives_inrush(kind, n, c, simulator))
+    return found
+
+
+def _survives_inrush(kind: Type, n: Numbers, c: Circuits, simulator: Simulator) -> bool:
+    """Whether the switch carries a cold filament: saturated, or at least within its power rating while it is not.
+
+    A cold filament lights only where it gets a good part of its inrush: half of it is asked here.
+    """
+    t = np.where(c.t > n.ambient[0], n.ambient[1], n.ambient[0])  # the filament is cold before the junction is hot
+    cold = replace(c, load=c.load / n.inrush, t=t)
+    p = simulator(kind.devices, cold, kind.polarity)
+    power = p.vce * p.ic
+    allowed = (kind.tj_max - n.ambient[1]) / thermal_resistance(kind, n)
+    good = (p.ic >= 0.5 * cold.vs / cold.load) & ((p.vce < (2.5 if kind.darlington else 1.0)) | (power <= allowed))
+    return bool(good.all())
 
 
 def switching_times(kind: Type, n: Numbers, rb: float, rbe: float | None) -> dict[str, float]:
@@ -239,22 +279,38 @@ def broken_bounds(bounds: Mapping[str, float | None], found: Mapping[str, float]
     return broken
 
 
-def shortfalls(kind: Type, n: Numbers, found: Mapping[str, float], icm: float, ib_max: float) -> list[str]:
+@dataclass(frozen=True, slots=True)
+class Ratings:
+    """Ratings of the sheet that the population does not carry itself."""
+
+    peak_current: float  # the continuous one where no peak is stated
+    base_current: float  # inf where not stated
+
+    @classmethod
+    def of(cls, part: Part) -> "Ratings":
+        """Read from the part's limits."""
+        found = {limit.symbol: limit.max for limit in part.limits if limit.max is not None}
+        return cls(found.get("ICM", found["IC"]), found.get("IB", np.inf))
+
+
+def shortfalls(kind: Type, ratings: Ratings, n: Numbers, found: Mapping[str, float]) -> list[str]:
     """What the network misses of the requirement and the ratings; empty when it does the job.
 
-    `icm` is the peak-current rating (the continuous one where there is none), `ib_max` that of the base (inf).
+    A value that was not found (NaN) is missed.
     """
     saturated = 2.5 if kind.darlington else 1.0
     limit = saturated if np.isnan(n.on_voltage) else n.on_voltage
     tj_limit = min(kind.tj_max, n.junction if not np.isnan(n.junction) else np.inf)
     asked = {
         "on voltage": found["vce_on_max"] <= limit,
-        "drive current": found["drive_current_max"] <= n.drive_current,
-        "collector current": found["ic_on_max"] <= kind.current and found["ic_on_max"] * n.inrush <= icm,
-        "base current": found["ib_on_max"] <= ib_max,
+        "drive current": found["drive_current_max"] <= n.drive_current * 1.0001,
+        "collector current": found["ic_on_max"] <= kind.current
+        and found["ic_on_max"] * n.inrush <= ratings.peak_current,
+        "base current": found["ib_on_max"] <= ratings.base_current,
         "junction": found["tj_max"] <= tj_limit,
         "off current": found["ic_off_max"] <= n.off_current,
         "off voltage": found["vce_off_max"] <= kind.vceo,
-        "turn-off time": np.isnan(n.turn_off) or found.get("t_off_max", np.inf) <= n.turn_off,
+        "turn-off time": np.isnan(n.turn_off) or found.get("t_off_max", 0.0) <= n.turn_off,
+        "inrush": found.get("inrush_ok", 1.0) > 0,
     }
     return [name for name, good in asked.items() if not good]
