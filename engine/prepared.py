@@ -19,10 +19,14 @@ from .shelf import SYMBOL_CODES, Shelf
 Floats = NDArray[np.float64]
 Mask = NDArray[np.bool_]
 
+GAIN_AT_LOW_VCE = 0.85  # share of a gain stated at 5…10 V that is kept at 1 V without quasi-saturation
+GAIN_QUASI_SATURATED = 0.2  # the share that high-voltage and power types keep in it
 LOW_VCE = 2.0  # V: a gain stated at or below this speaks for a switch
 COLD_EXPONENT = 2.5  # of absolute temperature, see source "gain cold"
 DARLINGTON_EXPONENT = 5.0
 POWER_PACKAGES = ("TO-3", "TO-66", "TO-220", "TO-126", "TO-202", "TO-218", "TO-247", "TO-252", "TO-263", "TO-264")
+USUAL_FLOOR = 0.60  # V at a tenth of the rated collector current, source "vbe floor"
+OHMIC = 0.5  # V that resistances can add to VBE at the rated collector current (common practice)
 SMALL_PD = 1.0  # W: a rating without reference temperature up to here is an ambient one (common practice)
 
 
@@ -35,6 +39,7 @@ class Prepared:
     darlington: Mask
     prebiased: Mask
     power: Mask  # a power type: second breakdown and quasi-saturation are to be reckoned with
+    v_epi: Floats  # unmodulated collector drop per ampere, Ω: what quasi-saturation can cost (common practice)
     vceo: Floats
     vebo: Floats
     ic: Floats
@@ -51,7 +56,8 @@ class Prepared:
     es_b: Floats
     gain: Curve  # from the points at any VCE above LOW_VCE
     gain_low: Curve  # from the points at low VCE
-    gain_switch: Curve  # the same, carried on above them by saturation tests
+    gain_plain: Curve  # what is left of all points at low VCE, without quasi-saturation, and the saturation tests above
+    gain_quasi: Curve  # the same where quasi-saturation is to be reckoned with
     cold_exponent: Floats
     slope_below: Floats
     sat_ic: Floats  # (k, n) saturation tests in rising IC
@@ -155,6 +161,7 @@ def _thermal(shelf: Shelf) -> dict[str, Floats | Grades | Mask]:
         "pd_ambient": _most(np.where(at_ambient | small, pd["max"], np.nan)),
         "pd_case": np.where(np.isnan(pd_case), _most(np.where(bare, pd["max"], np.nan)), pd_case),
         "power": named | (pd_case >= 10) | (r["ic"] >= 3),
+        "v_epi": (0.5 + 0.02 * r["vceo"]) / r["ic"],
     }
 
 
@@ -169,6 +176,7 @@ def _resistance(printed: Floats, from_slope: Floats, from_power: Floats) -> tupl
 def _saturation(shelf: Shelf) -> dict[str, Floats | Grades]:
     sat = shelf.points["VCE(sat)"]
     v, typical = _limit_or_typical(sat["max"], sat["typ"])
+    v = _worst_of_same(v, np.maximum, sat["ic"], sat["ib"], sat["temp"])
     used = _room_points(sat["temp"], ~np.isnan(v) & (sat["ic"] > 0) & (sat["ib"] > 0), hotter=True)
     order = np.argsort(np.where(used, sat["ic"], np.nan), axis=0, kind="stable")
     ic, ib, volts = (np.take_along_axis(np.where(used, c, np.nan), order, 0) for c in (sat["ic"], sat["ib"], v))
@@ -183,33 +191,42 @@ def _saturation(shelf: Shelf) -> dict[str, Floats | Grades]:
 
 def _junction(shelf: Shelf) -> dict[str, Floats | Grades]:
     """VBE from above (saturation tests) and from below (minimums on file, else common practice)."""
-    sat, on = shelf.points["VBE(sat)"], shelf.points["VBE(on)"]
+    sat = shelf.points["VBE(sat)"]
     v, typical = _limit_or_typical(sat["max"], sat["typ"])
+    v = _worst_of_same(v, np.maximum, sat["ic"], sat["ib"], sat["temp"])
     used = ~np.isnan(v) & (sat["ic"] > 0) & (sat["ib"] > 0)
     used = _room_points(sat["temp"], used, hotter=False)
-    vt = float(thermal_voltage(ROOM))
-    merit, at = np.full(len(shelf), -np.inf), np.full(len(shelf), np.nan)
-    volts = np.full(len(shelf), np.nan)
-    # what a minimum loses to the ohmic drop of its own test current: common practice
-    for points, ohmic in ((on, 0.03), (sat, 0.06)):
-        for low, ic in zip(points["min"], points["ic"], strict=True):
-            better = (low - ohmic - vt * np.log(ic)) > merit
-            merit = np.where(better, low - ohmic - vt * np.log(ic), merit)
-            volts, at = np.where(better, low - ohmic, volts), np.where(better, ic, at)
-    stated = ~np.isnan(volts)
     return {
         "vbe_ic": np.where(used, sat["ic"], np.nan),
         "vbe_ib": np.where(used, sat["ib"], np.nan),
         "vbe_v": np.where(used, v, np.nan),
         "vbe_grade": _grade(used, typical),
-        "floor_v": np.where(stated, volts, 0.60),
-        "floor_i": np.where(stated, at, shelf.ratings["ic"] / 10),
+        "floor_v": _junction_floor(shelf),
+        "floor_i": shelf.ratings["ic"] / 10,
     }
+
+
+def _junction_floor(shelf: Shelf) -> Floats:
+    """VBE that every device has at least at a tenth of its rated collector current, 25 °C. [V]
+
+    Common practice says 0.60 V. A minimum on file says more where it was measured at a small current, for
+    the ohmic drop in it may be half a volt at the rated current; and where it says less, it is believed.
+    """
+    vt = float(thermal_voltage(ROOM))
+    rated = shelf.ratings["ic"]
+    sure, most = np.full(len(shelf), USUAL_FLOOR), np.full(len(shelf), -np.inf)
+    for points in (shelf.points["VBE(on)"], shelf.points["VBE(sat)"]):
+        for low, ic in zip(points["min"], points["ic"], strict=True):
+            moved = low + vt * np.log(rated / 10 / ic)
+            sure = np.where(moved - OHMIC * ic / rated - 0.02 > sure, moved - OHMIC * ic / rated - 0.02, sure)
+            most = np.where(moved > most, moved, most)
+    return np.where(np.isinf(most), sure, np.minimum(sure, most))
 
 
 def _gain(shelf: Shelf, ready: dict[str, Floats | Mask | Grades | Curve]) -> dict[str, Floats | Curve]:
     points = shelf.points["hFE"]
     gain, typical = _limit_or_typical(points["min"], points["typ"])
+    gain = _worst_of_same(gain, np.minimum, points["ic"], points["vce"], points["temp"])
     stated = ~np.isnan(gain) & (points["ic"] > 0)
     used = _room_points(points["temp"], stated, hotter=False)
     # a gain stated without VCE says nothing about a low one
@@ -218,28 +235,34 @@ def _gain(shelf: Shelf, ready: dict[str, Floats | Mask | Grades | Curve]) -> dic
     ic, vce = points["ic"], points["vce"]
     curve = Curve.through(ic, gain, vce, high, typical)
     curve_low = Curve.through(ic, gain, vce, low, typical)
-    sat_ic, sat_ib, sat_v = (np.asarray(ready[name]) for name in ("sat_ic", "sat_ib", "sat_v"))
-    top = np.where(np.isnan(curve_low.top), -np.inf, np.exp(curve_low.top))
-    beyond = ~np.isnan(sat_v) & (sat_ic > top)
-    switch = Curve.through(
-        np.concatenate([ic, sat_ic]),
-        np.concatenate([gain, sat_ic / sat_ib]),
-        np.concatenate([vce, sat_v]),
-        np.concatenate([low, beyond]),
-        np.concatenate([typical, np.broadcast_to(np.asarray(ready["sat_grade"]) >= Evidence.TYPICAL, sat_v.shape)]),
-    )
+    tests = tuple(np.asarray(ready[name]) for name in ("sat_ic", "sat_ib", "sat_v", "sat_grade"))
     darlington = np.asarray(ready["darlington"])
     slope = np.where(darlington, 1.0, 0.5)
     usual = np.where(darlington, DARLINGTON_EXPONENT, COLD_EXPONENT)
-    cold = stated & (points["temp"] < 15)
-    exponent = _cold_exponent(points, gain, cold, (curve, curve_low), slope)
+    exponent = _cold_exponent(points, gain, stated & (points["temp"] < 15), (curve, curve_low), slope)
+    kept = np.where(low, 1.0, GAIN_AT_LOW_VCE)
+    quasi = np.where(low, 1.0, GAIN_QUASI_SATURATED)
     return {
         "gain": curve,
         "gain_low": curve_low,
-        "gain_switch": switch,
+        "gain_plain": _with_tests(ic, gain * kept, vce, used, typical, tests),
+        "gain_quasi": _with_tests(ic, gain * quasi, vce, used, typical, tests),
         "slope_below": slope,
         "cold_exponent": np.where(np.isnan(exponent), usual, exponent),
     }
+
+
+def _with_tests(
+    ic: Floats, gain: Floats, vce: Floats, used: Mask, typical: Floats, tests: tuple[Floats, ...]
+) -> Curve:
+    """A gain floor carried on above its highest point by the saturation tests, whose IC ÷ IB every device has."""
+    sat_ic, sat_ib, sat_v, sat_grade = tests
+    top = np.max(np.where(used, ic, -np.inf), axis=0)
+    beyond = ~np.isnan(sat_v) & (sat_ic > top)
+    sat_typical = np.broadcast_to((sat_grade >= Evidence.TYPICAL).astype(np.float64), sat_v.shape)
+    columns = ((ic, sat_ic), (gain, sat_ic / sat_ib), (vce, sat_v), (used, beyond), (typical, sat_typical))
+    joined = [np.concatenate(pair) for pair in columns]
+    return Curve.through(joined[0], joined[1], joined[2], joined[3].astype(bool), joined[4])
 
 
 def _cold_exponent(
@@ -259,6 +282,7 @@ def _leakage(shelf: Shelf, ready: dict[str, Floats | Mask | Grades | Curve]) -> 
     """Collector leakage maximums. A Darlington's inner base floats: only what was measured whole counts."""
     leak = shelf.points["leakage"]
     v, typical = _limit_or_typical(leak["max"], leak["typ"])
+    v = _worst_of_same(v, np.maximum, leak["v"], leak["temp"], leak["symbol"])
     icbo_only = leak["symbol"] == SYMBOL_CODES["ICBO"]
     used = ~np.isnan(v) & ~np.isnan(leak["v"]) & ~(icbo_only & np.asarray(ready["darlington"]))
     return {
@@ -318,6 +342,19 @@ def _limit_or_typical(limit: Floats, typical: Floats) -> tuple[Floats, Floats]:
     without = np.isnan(limit).all(axis=0)
     fallback = np.isnan(limit) & without
     return np.where(fallback, typical, limit), fallback.astype(np.float64)
+
+
+def _worst_of_same(value: Floats, worst: np.ufunc, *conditions: Floats) -> Floats:
+    """Statements under the same conditions contradict each other: the unkind one holds for all. (k, n)"""
+    value = value.copy()
+    for i in range(len(value)):
+        for j in range(i):
+            same = ~np.isnan(value[i]) & ~np.isnan(value[j])
+            for one in conditions:
+                same &= (one[i] == one[j]) | (np.isnan(one[i]) & np.isnan(one[j]))
+            both = worst(value[i], value[j])
+            value[i], value[j] = np.where(same, both, value[i]), np.where(same, both, value[j])
+    return value
 
 
 def _room_points(temp: Floats, stated: Mask, hotter: bool) -> Mask:

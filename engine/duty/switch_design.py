@@ -19,9 +19,8 @@ from .switch_situation import UNSTATED_DARLINGTON, UNSTATED_ON_VOLTAGE, Corner, 
 
 Floats = NDArray[np.float64]
 
-GAIN_AT_LOW_VCE = 0.85  # share of a gain stated at 5…10 V that a plain small type keeps at 1 V
-GAIN_AT_LOW_VCE_POWER = 0.2  # high-voltage and power types, in quasi-saturation
 PLAIN_VCEO = 100.0  # V: up to here a small type is plain
+PLAIN_DROP = 0.35  # V: a collector drop up to which quasi-saturation is not to be reckoned with
 PLACES = tuple(np.linspace(1.0, 0.0, 9))  # where in the window RB is tried, from the largest
 
 
@@ -31,7 +30,7 @@ class Need:
 
     drive: Floats  # (), the level at the driver there
     witnesses: saturation.Witnesses
-    gain_stated: Floats  # the gain floor that the sheet states there, coldest; NaN: none
+    gain_stated: Floats  # the gain floor that the sheet states there, 25 °C: overdrive counts from it; NaN: none
     beta_allowed: Floats
     ib: Floats
     vbe: Floats  # highest VBE at that base current, coldest
@@ -104,6 +103,7 @@ def needs(sit: Situation, p: Prepared) -> Needs:
     cold = cold_factor(sit, p)
     corners = tuple(_need(sit, p, c, v_room, cold) for c in sit.corners)
     inrush = _inrush_need(sit, p, unstated, cold)
+    guess = np.minimum(guess, _tj_guess(sit, p, _promised(corners) * hot + cold_rise(sit, p), tj_limit))
     ic_least = _least_current(sit, float(np.max(v_on)))
     vbe_min = junction.vbe_hot.raw(ic_least, guess, p.floor_v, p.floor_i)
     leak = leakage.leakage_most(float(sit.vs_max.values), guess, p.leak_v, p.leak_t, p.leak_i, p.vceo)
@@ -144,21 +144,19 @@ def base_limit(p: Prepared) -> Floats:
     return np.where(np.isnan(p.ib), usual, p.ib)
 
 
-def stated_gain(p: Prepared, ic: float, cold: Floats) -> Floats:
-    """The gain floor that hFE limits state at `ic`, coldest. NaN where none reaches."""
-    return either(p.gain.at(ic, p.slope_below), p.gain_low.at(ic, p.slope_below)) * cold
+def stated_gain(p: Prepared, ic: float) -> Floats:
+    """The gain floor that hFE limits state at `ic`, 25 °C. NaN where none reaches."""
+    return either(p.gain.at(ic, p.slope_below), p.gain_low.at(ic, p.slope_below))
 
 
 def switch_witnesses(p: Prepared, ic: float, cold: Floats) -> saturation.Witnesses:
     """Saturation limits and gain floors of every part at one collector current."""
-    plain = ~p.power & (p.vceo <= PLAIN_VCEO)
-    kept = np.where(plain, GAIN_AT_LOW_VCE, GAIN_AT_LOW_VCE_POWER)
+    plain = (~p.power & (p.vceo <= PLAIN_VCEO)) | (p.v_epi * ic <= PLAIN_DROP)
     low = p.gain_low.at(ic, p.slope_below) * cold
-    switch = p.gain_switch.at(ic, p.slope_below) * cold
-    ample = saturation.GUARD * either(switch, kept * p.gain.at(ic, p.slope_below) * cold)
+    gain = either(low, np.where(plain, p.gain_plain.at(ic, p.slope_below), p.gain_quasi.at(ic, p.slope_below)) * cold)
     stretch = plain & ~p.darlington
     return saturation.witnesses(
-        ic, p.sat_ic, p.sat_ib, p.sat_v, cold, p.slope_below, ample, low, p.gain_low.vce, stretch
+        ic, p.sat_ic, p.sat_ib, p.sat_v, cold, p.slope_below, gain, low, p.gain_low.vce, stretch
     )
 
 
@@ -172,11 +170,20 @@ def vbe_highest(sit: Situation, p: Prepared, ic: float, ib: Floats) -> Floats:
 def _need(sit: Situation, p: Prepared, corner: Corner, v_room: Floats, cold: Floats) -> Need:
     ic = float(corner.ic.values)
     w = switch_witnesses(p, ic, cold)
-    gain = stated_gain(p, ic, cold)
+    gain = stated_gain(p, ic)
     beta = saturation.beta_allowed(w, v_room)
     floor = np.where(np.isnan(gain), np.inf, gain)
     ib = drive.base_current_needed.raw(ic, beta, sit.number("choice.overdrive"), floor)
     return Need(corner.drive.values, w, gain, beta, ib, vbe_highest(sit, p, ic, ib))
+
+
+def _promised(corners: tuple[Need, ...]) -> Floats:
+    """The on-voltage at 25 °C that the needed base current brings; infinite where nothing is promised. [V]"""
+    worst = np.zeros(len(corners[0].ib))
+    for need in corners:
+        v = saturation.v_promised(need.witnesses, need.beta_allowed)
+        worst = np.maximum(worst, np.where(np.isnan(v), np.inf, v))
+    return worst
 
 
 def _inrush_need(sit: Situation, p: Prepared, unstated: Floats, cold: Floats) -> Need | None:

@@ -8,7 +8,7 @@ from .constants import ROOM, ROOM_KELVIN, ZERO_CELSIUS, thermal_voltage
 
 Floats = NDArray[np.float64]
 
-MOST_BEYOND = 3.0  # how far beyond its test currents a VBE(sat) limit is followed
+MOST_BEYOND = 10.0  # how far beyond its test currents a VBE(sat) limit is followed
 JUNCTION_LEAST = 0.6  # V of a VBE(sat) limit that is surely junction and not ohmic
 COLD_SHIFT = 2.5e-3  # V/K a junction
 EG_HIGH = 1.17  # eV, the unkind band gap for a hot minimum
@@ -18,8 +18,9 @@ XTI = 3.0
 def vbe_highest(ic: Floats, ib: Floats, ic_t: Floats, ib_t: Floats, v_t: Floats) -> Floats:
     """Highest VBE at 25 °C for saturated operation at (ic, ib), from VBE(sat) maximums. [V]
 
-    Below a test's currents every device falls by at least VT·ln of the ratio; above them the
-    junction rises by that and the ohmic rest in proportion. Each test gives a bound; the least holds.
+    Below a test's currents every device falls by at least VT·ln of the ratio; above them the junction
+    rises by twice that (high-level injection) and the ohmic rest in proportion. Each test gives a bound;
+    the least holds.
 
     Shapes: ic, ib () or (n,); the tests (k, n), NaN-padded. NaN where no test reaches.
     """
@@ -29,14 +30,14 @@ def vbe_highest(ic: Floats, ib: Floats, ic_t: Floats, ib_t: Floats, v_t: Floats)
         for one_ic, one_ib, one_v in zip(ic_t, ib_t, v_t, strict=True):
             ratio = np.maximum(ic / one_ic, ib / one_ib)
             ohmic = np.maximum(one_v - JUNCTION_LEAST, 0.0) * np.maximum(ratio - 1.0, 0.0)
-            bound = one_v + vt * np.log(ratio) + ohmic
+            bound = one_v + vt * np.log(ratio) * np.where(ratio > 1, 2.0, 1.0) + ohmic
             best = np.where((ratio <= MOST_BEYOND) & (bound < best), bound, best)
     return np.where(np.isinf(best), np.nan, best)
 
 
 @formula("VBE(sat) max", "V", "highest base–emitter voltage at 25 °C",
          words="the least of the bounds from the part's VBE(sat) limits: V(limit) + VT·ln r, and above the test "
-               "currents the ohmic rest times r, with r the larger of IC and IB over those of the test",
+               "currents 2·VT·ln r and the ohmic rest times r, with r the larger of IC and IB over those of the test",
          source="ebers-moll")  # fmt: skip
 def vbe_at_room(**_: Floats) -> Floats:
     """Traced only: see `vbe_highest`."""

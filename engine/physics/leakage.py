@@ -10,7 +10,7 @@ Floats = NDArray[np.float64]
 
 KNEE = 85.0  # °C: below it leakage is taken to double every 8 K, above every 10 K
 STEP_BELOW, STEP_ABOVE = 8.0, 10.0
-VOLTAGE_SHARE = 0.8  # of VCEO: up to here leakage grows no faster than the voltage
+JUNCTION_OVER_VCEO = 1.5  # least ratio of the collector junction's own breakdown to VCEO (common practice)
 
 
 def doublings(t: Floats) -> Floats:
@@ -24,9 +24,11 @@ def leakage_most(v: float, t: Floats, test_v: Floats, test_t: Floats, test_i: Fl
 
     Each limit grows by the doubling rule from its own temperature; a limit at a hotter test holds as it
     stands; between a cooler and a hotter limit the chord of log I over 1/T holds. The kindest bound wins,
-    since each is true. A test at a lower voltage is scaled with the voltage up to 0.8 of VCEO. NaN: none.
+    since each is true. A test at a lower voltage is scaled with the voltage and the multiplication factor
+    1/(1 − (V/VBR)³) of the junction, up to VCEO. NaN: none.
     """
-    scale = np.where(test_v >= v * (1 - 1e-9), 1.0, np.where(v <= VOLTAGE_SHARE * vceo, v / test_v, np.nan))
+    multiplied = v / test_v / (1 - (v / (JUNCTION_OVER_VCEO * vceo)) ** 3)
+    scale = np.where(test_v >= v * (1 - 1e-9), 1.0, np.where(v <= vceo, multiplied, np.nan))
     at_v = test_i * scale
     best = np.full(len(vceo), np.inf)
     inverse = 1 / (t + ZERO_CELSIUS)

@@ -18,7 +18,8 @@ Mask = NDArray[np.bool_]
 
 HOT_RATE = 0.006  # 1/K, source "saturation hot"
 LEAST_REVERSE_BETA = 0.1  # of a transistor in use: bounds the intrinsic part of VCE(sat)
-GUARD = 0.5  # share of the gain floor up to which weak gain cannot undo a saturation limit
+GUARD = 0.6  # share of the gain floor that a saturation limit covers without an allowance
+STRETCHED = 0.85  # share up to which a plain type is followed by Ebers–Moll
 
 
 @dataclass(frozen=True, eq=False)
@@ -29,9 +30,9 @@ class Witnesses:
     v_light: Floats  # the same for this lower current, while the gain is ample
     beta: Floats
     beta_cold: Floats  # forced beta that the witness itself proves at the coldest and at this current
-    gain_guard: Floats  # (n,) forced beta up to which the gain is ample; NaN: unknown
-    gain_low: Floats  # (n,) gain floor at low VCE, coldest; NaN: unknown
-    v_gain: Floats  # (n,) the VCE from which that floor holds
+    gain: Floats  # (n,) gain floor without quasi-saturation, coldest; NaN: unknown
+    gain_low: Floats  # (n,) gain floor that limits at low VCE state, coldest; NaN: unknown
+    v_gain: Floats  # (n,) the VCE from which that one holds
     stretch: Mask  # (n,) a plain small type, whose collector resistance does not depend on the drive
 
 
@@ -42,7 +43,7 @@ def witnesses(
     sat_v: Floats,
     cold: Floats,
     slope_below: Floats,
-    gain_guard: Floats,
+    gain: Floats,
     gain_low: Floats,
     v_gain: Floats,
     stretch: Mask,
@@ -70,7 +71,7 @@ def witnesses(
         beta.append(ic / (low_ib + share * (ib_t - low_ib)))
         beta_cold.append(beta[-1] * cold)
     stacked = (np.stack(rows) for rows in (v, light, beta, beta_cold))
-    return Witnesses(*stacked, gain_guard, gain_low, v_gain, stretch)
+    return Witnesses(*stacked, gain, gain_low, v_gain, stretch)
 
 
 def beta_allowed(w: Witnesses, v_most: Floats) -> Floats:
@@ -83,19 +84,25 @@ def beta_allowed(w: Witnesses, v_most: Floats) -> Floats:
     none = np.isinf(best)
     if none.any():
         least = np.min(np.where(np.isnan(w.v), np.inf, w.v), axis=0)
+        least = np.where(np.isinf(least), w.v_gain, least)
         best = np.where(none, _beta_for(w, least), best)
     return np.where(np.isinf(best), np.nan, best)
 
 
 def _beta_for(w: Witnesses, v_most: Floats) -> Floats:
     vt = float(thermal_voltage(ROOM))
-    best = np.full(w.v.shape[1], -np.inf)
-    guard = np.where(np.isnan(w.gain_guard), -np.inf, w.gain_guard)
+    gain = np.where(np.isnan(w.gain), 0.0, w.gain)
+    most = np.where(w.stretch, STRETCHED, GUARD) * gain
+    # a gain stated at low VCE is a witness of its own: with that base current VCE is no higher
+    best = np.where(w.v_gain <= v_most, w.gain_low, -np.inf)
+    best = np.where(np.isnan(best), -np.inf, best)
     for v, light, beta, proven in zip(w.v, w.v_light, w.beta, w.beta_cold, strict=True):
-        ample = np.minimum(beta, guard)
+        room = np.exp((v_most - light) / vt)  # what the wanted voltage leaves, in thermal voltages
+        ample = np.minimum(np.minimum(beta, most), gain * (1 - (1 - GUARD) / room))
         best = np.where((light <= v_most) & (ample > best), ample, best)
         best = np.where((v <= v_most) & (proven > best), proven, best)
-        stretched = np.minimum(guard, (beta + 1) * np.exp((v_most - light) / vt) / 2 - 1)
+        steep = np.where(np.isinf(room), gain, ((beta + 1) * room - 1) / (1 + (beta + 1) * room / gain))
+        stretched = np.minimum(most, steep)
         best = np.where(w.stretch & (stretched > beta) & (stretched > best), stretched, best)
         share = np.clip((v_most - v) / (w.v_gain - v), 0.0, 1.0)
         chord = 1 / (1 / proven - share * (1 / proven - 1 / w.gain_low))
@@ -107,15 +114,16 @@ def _beta_for(w: Witnesses, v_most: Floats) -> Floats:
 def v_promised(w: Witnesses, beta_forced: Floats) -> Floats:
     """The least VCE(sat) bound at 25 °C that some witness promises at `beta_forced`. (n,), NaN: none. [V]"""
     vt = float(thermal_voltage(ROOM))
-    best = np.full(w.v.shape[1], np.inf)
     slack = 1 + 1e-9  # a network chosen for exactly the allowed beta is allowed
-    guard = np.where(np.isnan(w.gain_guard), -np.inf, w.gain_guard) * slack
+    most = np.where(w.stretch, STRETCHED, GUARD) * np.where(np.isnan(w.gain), 0.0, w.gain) * slack
+    spare = 1 - beta_forced / w.gain
+    best = np.where(beta_forced <= w.gain_low * slack, w.v_gain, np.inf)
     for v, light, beta, proven in zip(w.v, w.v_light, w.beta, w.beta_cold, strict=True):
-        ample = beta_forced <= np.minimum(beta * slack, guard)
-        best = np.where(ample & (light < best), light, best)
+        near = light + vt * np.maximum(np.log((1 - GUARD) / spare), 0.0)
+        best = np.where((beta_forced <= np.minimum(beta * slack, most)) & (near < best), near, best)
         best = np.where((beta_forced <= proven * slack) & (v < best), v, best)
-        stretched = light + vt * np.log(2 * (beta_forced + 1) / (beta + 1))
-        usable = w.stretch & (beta_forced > beta) & (beta_forced <= guard)
+        stretched = light + vt * np.log((beta_forced + 1) / (beta + 1) / spare)
+        usable = w.stretch & (beta_forced > beta) & (beta_forced <= most)
         best = np.where(usable & (stretched < best), stretched, best)
         share = (1 / proven - 1 / beta_forced) / (1 / proven - 1 / w.gain_low)
         chord = v + (w.v_gain - v) * share
@@ -126,7 +134,7 @@ def v_promised(w: Witnesses, beta_forced: Floats) -> Floats:
 
 @formula("VCE(sat)", "V", "on-voltage that the saturation limits promise at 25 °C",
          words="the least of the part's VCE(sat) limits (and lines between neighbours) that reach IC; beyond a test's "
-               "own IC ÷ IB only as far as half the cold gain floor, with VT·ln(2·(β + 1) ÷ (β(test) + 1)) added, or on "
+               "own IC ÷ IB with VT·ln((β + 1) ÷ (β(test) + 1) ÷ (1 − β ÷ hFE)) added, hFE the cold gain floor, or on "
                "the line to a gain stated at low VCE",
          source="ebers-moll")  # fmt: skip
 def saturation_at_room(**_: Floats) -> Floats:
