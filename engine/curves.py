@@ -58,8 +58,8 @@ class Curve:
         inside = (x <= self.top + 1e-9) & (x >= self.x0 - DECADES_BELOW * np.log(10))
         return np.where(inside, np.exp(y), np.nan)
 
-    def take(self, rows: slice) -> "Curve":
-        """The curves of some parts, as views."""
+    def take(self, rows: "slice | NDArray[np.intp]") -> "Curve":
+        """The curves of some parts; a slice gives views."""
         one = (self.x0, self.y0, self.top)
         many = (self.start, self.length, self.slope)
         return Curve(*(c[rows] for c in one), *(c[:, rows] for c in many), self.vce[rows], self.grades[rows])

@@ -89,8 +89,8 @@ class Prepared:
     def __len__(self) -> int:
         return len(self.ic)
 
-    def take(self, rows: slice) -> "Prepared":
-        """Some of the parts, as views."""
+    def take(self, rows: "slice | NDArray[np.intp]") -> "Prepared":
+        """Some of the parts; a slice gives views."""
         cut = {}
         for one in fields(self):
             value = getattr(self, one.name)
@@ -240,8 +240,9 @@ def _gain(shelf: Shelf, ready: dict[str, Floats | Mask | Grades | Curve]) -> dic
     slope = np.where(darlington, 1.0, 0.5)
     usual = np.where(darlington, DARLINGTON_EXPONENT, COLD_EXPONENT)
     exponent = _cold_exponent(points, gain, stated & (points["temp"] < 15), (curve, curve_low), slope)
-    kept = np.where(low, 1.0, GAIN_AT_LOW_VCE)
-    quasi = np.where(low, 1.0, GAIN_QUASI_SATURATED)
+    share = _share_kept(ic, gain, low, curve, slope)
+    kept = np.where(low, 1.0, np.minimum(share, GAIN_AT_LOW_VCE))
+    quasi = np.where(low, 1.0, np.minimum(share, GAIN_QUASI_SATURATED))
     return {
         "gain": curve,
         "gain_low": curve_low,
@@ -250,6 +251,15 @@ def _gain(shelf: Shelf, ready: dict[str, Floats | Mask | Grades | Curve]) -> dic
         "slope_below": slope,
         "cold_exponent": np.where(np.isnan(exponent), usual, exponent),
     }
+
+
+def _share_kept(ic: Floats, gain: Floats, low: Mask, curve: Curve, slope: Floats) -> Floats:
+    """What a sheet that states gain at low and at high VCE says of the share kept at the low one. (n,)"""
+    least = np.full(ic.shape[1], np.inf)
+    for one_ic, one_gain, here in zip(ic, gain, low, strict=True):
+        share = one_gain / curve.at(one_ic, slope)
+        least = np.where(here & (share < least), share, least)
+    return least
 
 
 def _with_tests(

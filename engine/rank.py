@@ -1,14 +1,15 @@
 """Judge every part of a shelf under one requirement and order them."""
 
 from collections.abc import Callable, Mapping
+from dataclasses import dataclass
 from functools import lru_cache
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
 
 from .desirability import DEFAULT_WEIGHTS, criteria, overall
 from .duty import duties
-from .duty.base import Judged
 from .evidence import Evidence
 from .prepared import Prepared, prepare
 from .ranking import CheckColumn, Ranking, Status, Verdict
@@ -43,39 +44,84 @@ def rank(
 
     Raises Cancelled between two blocks of parts once `cancelled` says so.
     """
-    judge = duties()[requirement.duty].judge
+    duty = duties()[requirement.duty]
     ready = prepared(shelf)
+    worth = np.flatnonzero(duty.eligible(requirement, ready))
+    everyone = len(worth) == len(shelf)
     blocks = []
-    for start in range(0, max(len(shelf), 1), BLOCK):
+    for start in range(0, max(len(worth), 1), BLOCK):
         if cancelled():
             raise Cancelled
-        rows = slice(start, min(start + BLOCK, len(shelf)))
-        judged = judge(requirement, ready.take(rows), shelf.take(rows), network)
-        blocks.append((tuple(one.column() for one in judged.outcomes), judged))
-    return _ranking(requirement, shelf, blocks, weights or {})
+        rows = slice(start, start + BLOCK) if everyone else worth[start : start + BLOCK]
+        judged = duty.judge(requirement, ready.take(rows), shelf.take(rows), network)
+        columns = tuple(one.column() for one in judged.outcomes)
+        blocks.append(_Block(columns, decide(columns), judged.network, judged.bounds, judged.size))
+    return _ranking(requirement, shelf, blocks, worth, weights or {})
+
+
+@dataclass(frozen=True, eq=False)
+class _Block:
+    """Some parts judged, without their terms."""
+
+    columns: tuple[CheckColumn, ...]
+    decided: tuple[NDArray[np.int8], NDArray[np.int8], NDArray[np.int16], Floats]
+    network: Mapping[str, Floats]
+    bounds: Mapping[str, Floats]
+    size: Floats
 
 
 def _ranking(
-    req: Requirement,
-    shelf: Shelf,
-    blocks: list[tuple[tuple[CheckColumn, ...], Judged]],
-    weights: Mapping[str, float],
+    req: Requirement, shelf: Shelf, blocks: list[_Block], worth: NDArray[np.intp], weights: Mapping[str, float]
 ) -> Ranking:
-    columns = tuple(_joined([block[0][i] for block in blocks]) for i in range(len(blocks[0][0])))
-    network = _joined_maps([judged.network for _, judged in blocks])
-    bounds = _joined_maps([judged.bounds for _, judged in blocks])
-    verdict, evidence, worst, headroom = decide(columns)
-    size = np.concatenate([judged.size for _, judged in blocks])
+    spread = _Spread(len(shelf), worth)
+    columns = tuple(_whole([block.columns[i] for block in blocks], spread) for i in range(len(blocks[0].columns)))
+    network = {name: spread([b.network[name] for b in blocks], np.nan) for name in blocks[0].network}
+    bounds = {name: spread([b.bounds[name] for b in blocks], np.nan) for name in blocks[0].bounds}
+    verdict = spread([b.decided[0] for b in blocks], np.int8(Verdict.FAILS))
+    evidence = spread([b.decided[1] for b in blocks], np.int8(Evidence.MISSING))
+    structure = next((i for i, one in enumerate(columns) if one.name == "structure"), 0)
+    worst = spread([b.decided[2] for b in blocks], np.int16(structure))
+    headroom = spread([b.decided[3] for b in blocks], 0.0)
+    size = spread([b.size for b in blocks], np.nan)
     wanted = criteria(columns, headroom, evidence, size, shelf, req.number("choice.quantity"))
     score = overall(wanted, {**DEFAULT_WEIGHTS, **weights})
     score = np.where(verdict <= Verdict.FITS_ON_TYPICALS, score, 0.0)
     closeness = np.where(np.isnan(headroom), -1.0, headroom)
-    names = np.argsort(np.argsort(shelf.names.astype(str), kind="stable"), kind="stable")
-    order = np.lexsort((names, -np.minimum(closeness, 1e6), -score, verdict))
+    order = np.lexsort((shelf.alphabetical, -np.minimum(closeness, 1e6), -score, verdict))
     return Ranking(
         req, req.word("choice.derating") or "none", shelf, columns, network, bounds, verdict, evidence, worst, headroom,
         score, wanted, order,
     )  # fmt: skip
+
+
+class _Spread:
+    """Puts the columns of the parts that were judged back among all parts."""
+
+    def __init__(self, n: int, rows: NDArray[np.intp]) -> None:
+        self.n, self.rows = n, rows
+
+    def __call__(self, pieces: list[Any], elsewhere: Any) -> Any:
+        joined = pieces[0] if len(pieces) == 1 else np.concatenate(pieces)
+        if len(joined) == self.n:
+            return joined
+        whole = np.full(self.n, elsewhere, dtype=joined.dtype)
+        whole[self.rows] = joined
+        return whole
+
+
+def _whole(pieces: list[CheckColumn], spread: _Spread) -> CheckColumn:
+    """A check over all parts; those of the wrong kind fail the question of structure and are asked no other."""
+    first = pieces[0]
+    wrong_kind = first.name == "structure"
+    elsewhere = {
+        "value": 0.0 if wrong_kind else np.nan,
+        "limit": 1.0 if wrong_kind else np.nan,
+        "headroom": 0.0 if wrong_kind else np.nan,
+        "status": np.int8(Status.FAIL if wrong_kind else Status.UNKNOWN),
+        "evidence": np.int8(Evidence.GUARANTEED if wrong_kind else Evidence.MISSING),
+    }
+    arrays = [spread([getattr(one, name) for one in pieces], value) for name, value in elsewhere.items()]
+    return CheckColumn(first.name, first.question, first.unit, *arrays)
 
 
 def decide(
@@ -99,18 +145,3 @@ def decide(
     worst = np.argmin(tightness, axis=0).astype(np.int16)
     decisive = np.take_along_axis(headroom, worst[None, :].astype(np.intp), 0)[0]
     return verdict, evidence.astype(np.int8), worst, decisive
-
-
-def _joined(parts: list[CheckColumn]) -> CheckColumn:
-    first = parts[0]
-    if len(parts) == 1:
-        return first
-    arrays = (
-        np.concatenate([getattr(one, name) for one in parts])
-        for name in ("value", "limit", "headroom", "status", "evidence")
-    )
-    return CheckColumn(first.name, first.question, first.unit, *arrays)
-
-
-def _joined_maps(maps: list[Mapping[str, Floats]]) -> dict[str, Floats]:
-    return {name: np.concatenate([one[name] for one in maps]) for name in maps[0]}

@@ -111,6 +111,13 @@ class Shelf:
     def _rows(self) -> dict[str, int]:
         return {str(name): row for row, name in enumerate(self.names)}
 
+    @cached_property
+    def alphabetical(self) -> NDArray[np.intp]:
+        """The place of each part in the order of type numbers: what breaks ties. Shape (n,)."""
+        places = np.empty(len(self), dtype=np.intp)
+        places[np.argsort(self.names.astype(str), kind="stable")] = np.arange(len(self))
+        return places
+
     def index(self, type_number: str) -> int:
         """The row of `type_number`, exactly as written. Raises KeyError."""
         return self._rows[type_number]

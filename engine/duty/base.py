@@ -32,4 +32,5 @@ class Duty:
     fields: tuple[Field, ...]
     complete: Callable[[dict[str, Value]], tuple[dict[str, Value], list[Problem], list[str]]]
     judge: Callable[[Requirement, Prepared, Shelf, Mapping[str, float] | None], Judged]
+    eligible: Callable[[Requirement, Prepared], NDArray[np.bool_]]  # False: the wrong kind of part, not worth a design
     cautions: Callable[[Requirement], tuple[str, ...]]

@@ -113,4 +113,9 @@ def _bound_columns(b: Bounds, n: int) -> dict[str, Floats]:
     return {name: np.where(np.isfinite(column), column, np.nan) for name, column in finite.items()}
 
 
-DUTY = Duty("switch", FIELDS, complete, judge, cautions)
+def eligible(req: Requirement, p: Prepared) -> NDArray[np.bool_]:
+    """Parts of the right polarity, and those whose structure nobody stated. Shape (n,)."""
+    return ~p.known | (p.pnp == (req.word("position") == "high side"))
+
+
+DUTY = Duty("switch", FIELDS, complete, judge, eligible, cautions)

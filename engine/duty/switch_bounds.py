@@ -79,10 +79,9 @@ def bounds(sit: Situation, p: Prepared, n: Needs, net: Network) -> Bounds:
         inrush = _corner(sit, p, Corner(sit.ic_inrush, sit.corners[-1].drive), n.inrush, names)
     guess = n.tj_guess
     heat = _heat(sit, p, n, names, corners, guess)
-    if np.any(heat.tj.values > guess):  # beyond the first guess: take the part's limit, beyond which it fails anyway
-        limit = np.where(np.isnan(n.tj_limit), np.inf, n.tj_limit)
-        guess = np.where(heat.tj.values > guess, np.maximum(limit, guess), guess)
-        guess = np.where(np.isinf(guess), 150.0, guess)
+    hotter = (heat.tj.values > guess) & (heat.tj.values <= n.tj_limit)
+    if hotter.any():  # beyond the first guess and yet allowed: the limit is the unkind temperature then
+        guess = np.where(hotter, n.tj_limit, guess)
         heat = _heat(sit, p, n, names, corners, guess)
     hot = np.maximum(heat.tj.values, sit.number("ambient.max"))
     ic_on_min = _least_current(sit, heat.vce_on)
