@@ -1,0 +1,66 @@
+"""A ranking as a table: its columns and which of its rows are shown. Imports numpy."""
+
+from collections.abc import Callable
+
+import numpy as np
+from numpy.typing import NDArray
+
+from engine import show
+from engine.ranking import Ranking, Verdict
+
+from .shelf_table import NOT_KNOWN, short
+from .widgets.lines_view import Column
+
+
+def ohms(value: float) -> str:
+    """A resistance for a narrow cell: `4.7k`; a dash where there is no resistor."""
+    return NOT_KNOWN if value != value else show.quantity(value, "Ω", 3).removesuffix("Ω").replace(" ", "")
+
+
+def headroom(value: float) -> str:
+    """A headroom in at most five cells."""
+    if value != value:
+        return "?"
+    return f"×{value:.2f}" if value < 9.995 else f"×{value:.1f}" if value < 99.95 else f"×{min(value, 9999):.0f}"
+
+
+def columns(ranking: Ranking, marked: Callable[[str], bool]) -> list[Column]:
+    """The columns of a ranking; a narrow view leaves out the last ones to be missed."""
+    shelf, network, bounds = ranking.shelf, ranking.network, ranking.bounds
+    place = np.empty(len(shelf), dtype=np.int64)
+    place[ranking.order] = np.arange(1, len(shelf) + 1)
+    rank_width = max(len(str(len(shelf))), 2)
+    name_width = min(max((len(str(name)) for name in shelf.names[ranking.order[:2000]]), default=6), 14)
+    names = [check.name for check in ranking.checks]
+    nothing = np.full(len(shelf), np.nan)
+    rb, rbe = network.get("rb", nothing), network.get("rbe", nothing)
+    tj = bounds.get("tj_max", nothing)
+    return [
+        Column("", 1, lambda row: "*" if marked(str(shelf.names[row])) else ""),
+        Column("#", rank_width, lambda row: str(place[row]), right=True),
+        Column("type", name_width, lambda row: str(shelf.names[row])),
+        Column("verdict", 16, lambda row: Verdict(int(ranking.verdict[row])).words),
+        Column("room", 5, lambda row: headroom(float(ranking.headroom[row])), right=True),
+        Column("worst check", 0, lambda row: names[int(ranking.worst[row])]),
+        Column("RB", 5, lambda row: ohms(float(rb[row])), right=True),
+        Column("RBE", 5, lambda row: ohms(float(rbe[row])), right=True, spare=2),
+        Column("TJ", 3, lambda row: short(float(tj[row]), "", 3), right=True, spare=1),
+        Column("stock", 5, lambda row: str(shelf.stock[row]), right=True),
+        Column("score", 5, lambda row: _score(ranking, row), right=True),
+    ]
+
+
+def _score(ranking: Ranking, row: int) -> str:
+    return f"{ranking.score[row]:.2f}" if ranking.verdict[row] <= Verdict.FITS_ON_TYPICALS else NOT_KNOWN
+
+
+def rows(ranking: Ranking, *, only_fitting: bool) -> NDArray[np.intp]:
+    """Rows in ranked order; with `only_fitting` just those that fit, on typicals too."""
+    if not only_fitting:
+        return ranking.order
+    return ranking.order[ranking.verdict[ranking.order] <= Verdict.FITS_ON_TYPICALS]
+
+
+def summary(ranking: Ranking) -> str:
+    """How many parts have which verdict."""
+    return " · ".join(f"{ranking.count(verdict):,} {verdict.words}" for verdict in Verdict)

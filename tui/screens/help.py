@@ -1,0 +1,59 @@
+"""Every key of every screen, made from the table of commands."""
+
+from textual.app import ComposeResult
+
+from ..commands import COMMANDS, EVERYWHERE, Command
+from ..widgets.cells import wrap
+from ..widgets.text_view import TextView
+from .base import Room
+
+WORDS = (
+    ("fits", "every check passes on guaranteed limits, or on limits derived from them"),
+    ("fits on typicals", "every check passes, but a typical value stands among the figures"),
+    ("cannot say", "a figure that a check needs is not on file; the reasons name it"),
+    ("fails", "a check fails at some combination the requirement allows"),
+    ("headroom", "limit over demand: ×1 is exactly at the limit, below it fails"),
+)
+ROOMS = {
+    "shelf": "Shelf", "bench": "Bench", "part": "Part", "sheet": "Calculation sheet", "shortlist": "Shortlist",
+    "weights": "Weights", "picker": "Lists to choose from", "ask": "Questions",
+}  # fmt: skip
+
+
+def help_lines(here: str, width: int) -> list[str]:
+    """The help text, the screen `here` first."""
+    rooms = sorted(ROOMS, key=lambda room: (room != here, list(ROOMS).index(room)))
+    lines = ["What the words mean", ""]
+    for word, meaning in WORDS:
+        first, *rest = wrap(meaning, width - 20)
+        lines += [f"  {word:<17} {first}", *(" " * 20 + line for line in rest)]
+    for title, room in [("Everywhere", EVERYWHERE), *((ROOMS[room], room) for room in rooms)]:
+        lines += ["", title + ("  (this screen)" if room == here else ""), ""]
+        for one in COMMANDS:
+            if room in one.rooms:
+                lines += _entry(one, width)
+    return lines
+
+
+def _entry(one: Command, width: int) -> list[str]:
+    first, *rest = wrap(one.sentence, width - 20)
+    return [f"  {one.shown:<7} {one.label:<9} {first}", *(" " * 20 + line for line in rest)]
+
+
+class HelpScreen(Room, room="help"):
+    """A text to scroll."""
+
+    heading = "help"
+
+    def __init__(self, here: str) -> None:
+        super().__init__()
+        self.here = here
+
+    def body(self) -> ComposeResult:
+        yield TextView(id="help")
+
+    def on_mount(self) -> None:
+        super().on_mount()
+        view = self.query_one(TextView)
+        view.show(lambda width: help_lines(self.here, width))
+        self.set_focus(view)

@@ -1,0 +1,129 @@
+"""Loading and saving requirements: examples, saved ones, files."""
+
+import re
+from collections.abc import Callable
+from dataclasses import replace
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from ..files import why, write_whole
+from ..requirement_texts import UnreadableRequirement, examples, read, read_file
+from ..source import SourceTrouble
+from ..state import Draft
+from .ask import Ask, Doubt, doubt_file
+from .picker import Choice, Picker
+
+if TYPE_CHECKING:
+    from ..app import BetafloorApp
+
+_FILE, _EMPTY, _EXAMPLE, _SAVED = "file", "empty", "example:", "saved:"
+
+
+def use(desk: "BetafloorApp", draft: Draft, weights: dict[str, float]) -> None:
+    """Put a draft into the form; the last ranking stays, stale, until this one is judged."""
+    from .bench import form_fields
+
+    known = {field.key for field in form_fields(draft.duty)}
+    strangers = sorted(draft.texts.keys() - known)
+    if strangers:
+        desk.notify(
+            f"Left out, as this duty has no such field: {', '.join(strangers)}", severity="warning", markup=False
+        )
+    texts = {key: text for key, text in draft.texts.items() if key in known}
+    desk.session = replace(
+        desk.session,
+        draft=Draft(draft.duty, draft.title, texts),
+        weights=weights,
+        stale=desk.session.ranking is not None,
+    )
+
+
+async def load_file(desk: "BetafloorApp", path: Path) -> None:
+    """Load a requirement file; say in one line why it cannot be read."""
+    try:
+        use(desk, *read_file(path))
+    except UnreadableRequirement as error:
+        desk.notify(str(error), title="Not loaded", severity="error", markup=False)
+
+
+async def pick_requirement(desk: "BetafloorApp") -> None:
+    """Let the user choose an example, a saved requirement or a file."""
+    shipped = examples()
+    try:
+        saved = dict(desk.source.requirements())
+    except SourceTrouble as trouble:
+        saved = {}
+        desk.notify(str(trouble), title="Saved requirements cannot be read", severity="error", markup=False)
+    choices = [
+        *(Choice(f"{_EXAMPLE}{title}", title, "example, invented") for title in shipped),
+        *(Choice(f"{_SAVED}{title}", title, "saved in the shelf") for title in saved),
+        Choice(_FILE, "A file …", "a requirement file, .toml"),
+        Choice(_EMPTY, "An empty form"),
+    ]
+
+    async def take(answer: str | None) -> None:
+        if answer is None:
+            return
+        if answer == _EMPTY:
+            use(desk, Draft(desk.session.draft.duty), {})
+        elif answer == _FILE:
+            await _ask_file(desk)
+        elif answer.startswith(_EXAMPLE):
+            use(desk, *read(shipped[answer.removeprefix(_EXAMPLE)]))
+        else:
+            use(desk, *read(saved[answer.removeprefix(_SAVED)]))
+
+    await desk.push_screen(Picker("Load a requirement", choices), take)
+
+
+async def _ask_file(desk: "BetafloorApp") -> None:
+    async def take(answer: str | None) -> None:
+        if answer is not None:
+            await load_file(desk, Path(answer).expanduser())
+
+    def doubt(text: str) -> Doubt | None:
+        return None if Path(text).expanduser().is_file() else Doubt(f"There is no file {text}.", final=True)
+
+    await desk.push_screen(Ask("Name of the requirement file", doubt=doubt), take)
+
+
+async def save_requirement(desk: "BetafloorApp") -> None:
+    """Write the requirement as a TOML file whose name the user gives."""
+    from importers.requirement_file import to_toml
+
+    requirement = desk.session.requirement
+    if requirement is None or desk.session.problems:
+        desk.notify("Mend the form first; only a sound requirement is saved.", severity="warning", markup=False)
+        return
+    text = to_toml(requirement, desk.session.weights)
+    await ask_and_write(
+        desk, "Save the requirement as", f"{file_stem(requirement.title)}.toml", (".toml",), lambda path: text.encode()
+    )
+
+
+async def ask_and_write(
+    desk: "BetafloorApp",
+    question: str,
+    name: str,
+    endings: tuple[str, ...],
+    content: Callable[[Path], bytes],
+) -> None:
+    """Ask for a file name, confirm where a file exists, write it whole, and say so."""
+
+    def take(answer: str | None) -> None:
+        if answer is None:
+            return
+        path = Path(answer).expanduser()
+        try:
+            write_whole(path, content(path))
+        except OSError as error:
+            desk.notify(why(error), title="Not written", severity="error", markup=False)
+            return
+        desk.notify(f"Written: {path}", markup=False)
+
+    await desk.push_screen(Ask(f"{question} ({', '.join(endings)})", name, doubt_file(endings)), take)
+
+
+def file_stem(title: str) -> str:
+    """A plain file name for a title."""
+    return re.sub(r"[^a-z0-9]+", "-", title.casefold()).strip("-") or "requirement"

@@ -1,0 +1,73 @@
+"""The calculation sheet of one part: every formula with its numbers, to read and to write to a file."""
+
+from typing import TYPE_CHECKING
+
+from textual import work
+from textual.app import ComposeResult
+
+from ..state import Session
+from ..widgets.cells import wrap
+from ..widgets.lines_of_screen import TitleLine
+from ..widgets.text_view import TextView
+from .base import Room
+
+if TYPE_CHECKING:
+    from ..exports import Sheet
+
+
+class SheetScreen(Room, room="sheet"):
+    """A text to scroll."""
+
+    heading = "calculation sheet"
+
+    def __init__(self, row: int) -> None:
+        super().__init__()
+        self.row = row
+        self._sheet: Sheet | None = None
+
+    def body(self) -> ComposeResult:
+        yield TextView(id="sheet")
+
+    def on_mount(self) -> None:
+        super().on_mount()
+        view = self.query_one(TextView)
+        view.show(["Writing the sheet …"])
+        self.set_focus(view)
+        self._write()
+
+    @work(thread=True, exclusive=True, group="sheet")
+    def _write(self) -> None:
+        from ..exports import make_sheet
+
+        if self.session.ranking is not None:
+            sheet = make_sheet(self.session.ranking, self.row)
+            self.app.call_from_thread(self._fill, sheet)
+
+    def _fill(self, sheet: "Sheet") -> None:
+        self._sheet = sheet
+        lines = sheet.text.splitlines()
+        self.query_one(TextView).show(lambda width: [part for line in lines for part in folded(line, width)])
+        stale = "STALE, of the last sound requirement · " if self.session.stale else ""
+        demo = "invented demo data" if self.session.demo else ""
+        self.query_one(TitleLine).say(f"{stale}{demo}", f"calculation sheet · {sheet.part}")
+
+    def show(self, session: Session, old: Session | None) -> None:
+        if old is not None and session.ranking is not old.ranking:
+            self._write()
+
+    async def action_export_sheet(self) -> None:
+        """Write the sheet to a file."""
+        from ..exports import SHEET_ENDINGS
+        from .load import ask_and_write, file_stem
+
+        sheet = self._sheet
+        if sheet is not None:
+            name = f"{file_stem(sheet.part)}-sheet.md"
+            await ask_and_write(self.desk, "Write the sheet as", name, SHEET_ENDINGS, sheet.content)
+
+
+def folded(line: str, width: int) -> list[str]:
+    """A line of the sheet in lines of `width` cells; what goes on is set in as far as the line was."""
+    lead = line[: len(line) - len(line.lstrip(" -*|"))]
+    first, *rest = wrap(line[len(lead) :], max(width - len(lead), 20))
+    return [lead + first, *(" " * len(lead) + one for one in rest)]
