@@ -58,7 +58,7 @@ class _Sheet:
 
     def add(self, symbol: str, low: float | None = None, high: float | None = None, **conditions: float) -> None:
         pairs = tuple(sorted((name, float(value)) for name, value in conditions.items()))
-        self.limits.append(Limit(symbol, min=low, max=high, conditions=pairs, source=f"invented sheet {self.kind.number}"))
+        self.limits.append(Limit(symbol, min=low, max=high, conditions=pairs, source="invented sheet"))
 
     def least(self, values: Floats) -> float:
         return round_down(float(values.min()) * self.rng.uniform(0.85, 0.97))

@@ -19,7 +19,7 @@ BOLTZMANN_OVER_CHARGE = 1.380649e-23 / 1.602176634e-19  # V/K
 NOMINAL = 298.15  # K: the models are stated at 25 °C
 PARAMETERS = (
     "IS", "BF", "ISE", "NE", "IKF", "VAF", "BR", "RB", "RBM", "RC", "RE", "XTB", "XTI", "EG",
-    "RCO", "VO", "GAMMA", "QCO", "CN", "D", "TRC1", "CJE", "CJC", "TF", "TR",
+    "RCO", "VO", "GAMMA", "CN", "D", "TRC1", "CJE", "CJC", "TF", "TR",
 )  # fmt: skip
 GAP_OF_EPITAXY = 1.206  # V, ngspice's VG
 GMIN = 1e-12

@@ -143,7 +143,6 @@ def _nominal(family: Family, current: float, rng: np.random.Generator) -> dict[s
     p["GAMMA"] = _log(rng, *family.doping)
     p["TF"] = 1 / (2 * np.pi * _log(rng, *family.ft))
     p["TR"] = p["TF"] * _log(rng, 10, 60)
-    p["QCO"] = 0.3 * p["TF"] * current
     p["CJE"], p["CJC"] = 60e-12 * current**0.8, 20e-12 * current**0.8
     return p
 
@@ -151,7 +150,7 @@ def _nominal(family: Family, current: float, rng: np.random.Generator) -> dict[s
 def _smaller(p: dict[str, float], ratio: float) -> dict[str, float]:
     """The same transistor with `ratio` times less area."""
     scaled = dict(p)
-    for name in ("IS", "ISE", "IKF", "QCO", "CJE", "CJC"):
+    for name in ("IS", "ISE", "IKF", "CJE", "CJC"):
         scaled[name] = p[name] / ratio
     for name in ("RC", "RE", "RB", "RBM", "RCO"):
         scaled[name] = p[name] * ratio
