@@ -17,7 +17,7 @@ Floats = NDArray[np.float64]
 Mask = NDArray[np.bool_]
 
 HOT_RATE = 0.006  # 1/K, source "saturation hot"
-LEAST_REVERSE_BETA = 0.1  # of a transistor in use: bounds the intrinsic part of VCE(sat)
+LEAST_REVERSE_BETA = 0.1  # of a transistor in use: bounds the intrinsic part of VCE(sat) (common practice)
 GUARD = 0.6  # share of the gain floor that a saturation limit covers without an allowance
 STRETCHED = 0.85  # share up to which a plain type is followed by Ebers–Moll
 
@@ -27,7 +27,7 @@ class Witnesses:
     """Saturation limits that reach one collector current. Shapes (m, n), NaN where there is none."""
 
     v: Floats  # promised at forced beta `beta`, 25 °C
-    v_light: Floats  # the same for this lower current, while the gain is ample
+    v_ohmic: Floats  # the most that resistances can take of it at this lower current; NaN on a line between tests
     beta: Floats
     beta_cold: Floats  # forced beta that the witness itself proves at the coldest and at this current
     gain: Floats  # (n,) gain floor without quasi-saturation, coldest; NaN: unknown
@@ -52,25 +52,22 @@ def witnesses(
 
     `cold` (n,) is the factor from 25 °C to the coldest gain, `slope_below` how the gain falls with IC.
     """
-    intrinsic = float(thermal_voltage(ROOM)) * np.log((1 + 11 / LEAST_REVERSE_BETA) / (1 - GUARD))
-    v, light, beta, beta_cold = [], [], [], []
+    v, ohmic, beta, beta_cold = [], [], [], []
     for i, (ic_t, ib_t, v_t) in enumerate(zip(sat_ic, sat_ib, sat_v, strict=True)):
-        reaches = ic <= ic_t * (1 + 1e-9)
-        ratio = np.where(reaches, ic / ic_t, np.nan)
-        v.append(np.where(reaches, v_t, np.nan))
-        # the intrinsic part is bounded, the ohmic part shrinks with the current
-        light.append(np.minimum(v[-1], intrinsic + v_t * ratio))
-        beta.append(np.where(reaches, ic_t / ib_t, np.nan))
+        ratio = np.where(ic <= ic_t * (1 + 1e-9), ic / ic_t, np.nan)
+        v.append(np.where(np.isnan(ratio), np.nan, v_t))
+        ohmic.append(v_t * ratio)
+        beta.append(np.where(np.isnan(ratio), np.nan, ic_t / ib_t))
         beta_cold.append(beta[-1] * cold * np.minimum(ratio, 1.0) ** slope_below)
         if i == 0:
             continue
         low_ic, low_ib, low_v = sat_ic[i - 1], sat_ib[i - 1], sat_v[i - 1]
         share = np.where((low_ic < ic) & (ic < ic_t), (ic - low_ic) / (ic_t - low_ic), np.nan)
         v.append(np.maximum(low_v, low_v + share * (v_t - low_v)))
-        light.append(v[-1])
+        ohmic.append(np.full_like(share, np.nan))
         beta.append(ic / (low_ib + share * (ib_t - low_ib)))
         beta_cold.append(beta[-1] * cold)
-    stacked = (np.stack(rows) for rows in (v, light, beta, beta_cold))
+    stacked = (np.stack(rows) for rows in (v, ohmic, beta, beta_cold))
     return Witnesses(*stacked, gain, gain_low, v_gain, stretch)
 
 
@@ -83,10 +80,16 @@ def beta_allowed(w: Witnesses, v_most: Floats) -> Floats:
     best = _beta_for(w, v_most)
     none = np.isinf(best)
     if none.any():
-        least = np.min(np.where(np.isnan(w.v), np.inf, w.v), axis=0)
-        least = np.where(np.isinf(least), w.v_gain, least)
-        best = np.where(none, _beta_for(w, least), best)
+        best = np.where(none, _beta_for(w, _least_voltage(w)), best)
     return np.where(np.isinf(best), np.nan, best)
+
+
+def _least_voltage(w: Witnesses) -> Floats:
+    """A voltage that some witness does promise, near the least. (n,) [V]"""
+    hard_driven = w.v_ohmic + float(thermal_voltage(ROOM)) * np.log((1 + 2 / LEAST_REVERSE_BETA) / (1 - GUARD))
+    promised = np.where(np.isnan(hard_driven), w.v, np.minimum(w.v, hard_driven))
+    least = np.min(np.where(np.isnan(promised), np.inf, promised), axis=0)
+    return np.where(np.isinf(least), w.v_gain, least)
 
 
 def _beta_for(w: Witnesses, v_most: Floats) -> Floats:
@@ -96,19 +99,29 @@ def _beta_for(w: Witnesses, v_most: Floats) -> Floats:
     # a gain stated at low VCE is a witness of its own: with that base current VCE is no higher
     best = np.where(w.v_gain <= v_most, w.gain_low, -np.inf)
     best = np.where(np.isnan(best), -np.inf, best)
-    for v, light, beta, proven in zip(w.v, w.v_light, w.beta, w.beta_cold, strict=True):
-        room = np.exp((v_most - light) / vt)  # what the wanted voltage leaves, in thermal voltages
+    for v, ohmic, beta, proven in zip(w.v, w.v_ohmic, w.beta, w.beta_cold, strict=True):
+        covered = np.where(w.stretch, most, np.minimum(beta, most))
+        room = np.exp((v_most - v) / vt)  # what the wanted voltage leaves, in thermal voltages
         ample = np.minimum(np.minimum(beta, most), gain * (1 - (1 - GUARD) / room))
-        best = np.where((light <= v_most) & (ample > best), ample, best)
+        best = np.where((v <= v_most) & (ample > best), ample, best)
         best = np.where((v <= v_most) & (proven > best), proven, best)
-        steep = np.where(np.isinf(room), gain, ((beta + 1) * room - 1) / (1 + (beta + 1) * room / gain))
-        stretched = np.minimum(most, steep)
+        stretched = np.minimum(most, _solved(beta + 1, room, 1.0, 1.0, gain))
         best = np.where(w.stretch & (stretched > beta) & (stretched > best), stretched, best)
+        room = np.exp((v_most - ohmic) / vt)
+        inner = 1 / LEAST_REVERSE_BETA
+        intrinsic = np.minimum(covered, _solved(1.0, room, inner, 1 + inner, gain))
+        best = np.where(intrinsic > np.maximum(best, 0.0), intrinsic, best)
         share = np.clip((v_most - v) / (w.v_gain - v), 0.0, 1.0)
         chord = 1 / (1 / proven - share * (1 / proven - 1 / w.gain_low))
         usable = (v <= v_most) & (w.v_gain > v) & (w.gain_low > proven)
         best = np.where(usable & (chord > best), chord, best)
     return best
+
+
+def _solved(scale: "Floats | float", room: Floats, slope: float, start: float, gain: Floats) -> Floats:
+    """The forced beta b that solves (start + slope·b) = scale·room·(1 − b ÷ gain)."""
+    top = scale * room
+    return np.where(np.isinf(room), gain, (top - start) / (slope + top / gain))
 
 
 def v_promised(w: Witnesses, beta_forced: Floats) -> Floats:
@@ -117,14 +130,18 @@ def v_promised(w: Witnesses, beta_forced: Floats) -> Floats:
     slack = 1 + 1e-9  # a network chosen for exactly the allowed beta is allowed
     most = np.where(w.stretch, STRETCHED, GUARD) * np.where(np.isnan(w.gain), 0.0, w.gain) * slack
     spare = 1 - beta_forced / w.gain
+    in_gain = beta_forced <= most
+    near_gain = vt * np.maximum(np.log((1 - GUARD) / spare), 0.0)
+    intrinsic = vt * np.log((1 + (beta_forced + 1) / LEAST_REVERSE_BETA) / spare)
     best = np.where(beta_forced <= w.gain_low * slack, w.v_gain, np.inf)
-    for v, light, beta, proven in zip(w.v, w.v_light, w.beta, w.beta_cold, strict=True):
-        near = light + vt * np.maximum(np.log((1 - GUARD) / spare), 0.0)
-        best = np.where((beta_forced <= np.minimum(beta * slack, most)) & (near < best), near, best)
+    for v, ohmic, beta, proven in zip(w.v, w.v_ohmic, w.beta, w.beta_cold, strict=True):
+        within = beta_forced <= beta * slack
+        best = np.where(within & in_gain & (v + near_gain < best), v + near_gain, best)
         best = np.where((beta_forced <= proven * slack) & (v < best), v, best)
-        stretched = light + vt * np.log((beta_forced + 1) / (beta + 1) / spare)
-        usable = w.stretch & (beta_forced > beta) & (beta_forced <= most)
-        best = np.where(usable & (stretched < best), stretched, best)
+        stretched = v + vt * np.log((beta_forced + 1) / (beta + 1) / spare)
+        best = np.where(w.stretch & ~within & in_gain & (stretched < best), stretched, best)
+        usable = (w.stretch | within) & in_gain
+        best = np.where(usable & (ohmic + intrinsic < best), ohmic + intrinsic, best)
         share = (1 / proven - 1 / beta_forced) / (1 / proven - 1 / w.gain_low)
         chord = v + (w.v_gain - v) * share
         usable = (share > 0) & (share <= slack) & (w.v_gain > v) & (w.gain_low > proven)
@@ -133,7 +150,8 @@ def v_promised(w: Witnesses, beta_forced: Floats) -> Floats:
 
 
 @formula("VCE(sat)", "V", "on-voltage that the saturation limits promise at 25 °C",
-         words="the least of the part's VCE(sat) limits (and lines between neighbours) that reach IC; beyond a test's "
+         words="the least of the part's VCE(sat) limits (and lines between neighbours) that reach IC; of one at a larger "
+               "current its ohmic share V·IC ÷ IC(test) and VT·ln((1 + (β + 1) ÷ βR) ÷ (1 − β ÷ hFE)); beyond a test's "
                "own IC ÷ IB with VT·ln((β + 1) ÷ (β(test) + 1) ÷ (1 − β ÷ hFE)) added, hFE the cold gain floor, or on "
                "the line to a gain stated at low VCE",
          source="ebers-moll")  # fmt: skip
