@@ -8,7 +8,6 @@ from typing import ClassVar
 
 from textual import on, work
 from textual.app import App
-from textual.binding import BindingType
 from textual.reactive import var
 from textual.screen import Screen
 
@@ -16,7 +15,7 @@ from .commands import EVERYWHERE, bindings_of
 from .messages import ShelfOpened, ShelfTrouble
 from .screens.base import key_is_free
 from .screens.shelf import ShelfScreen
-from .source import Source, SourceTrouble
+from .source import Source, SourceError
 from .state import Session
 
 
@@ -43,6 +42,7 @@ class BetafloorApp(App[int]):
 
     TITLE = "Betafloor"
     CSS_PATH = "style.tcss"
+    HORIZONTAL_BREAKPOINTS = [(0, "-narrow"), (110, "-wide")]  # noqa: RUF012  Textual declares it so
     MODES: ClassVar[dict[str, str | Callable[[], Screen[None]]]] = {
         "shelf": ShelfScreen,
         "bench": _bench,
@@ -50,7 +50,7 @@ class BetafloorApp(App[int]):
     }
     DEFAULT_MODE = "shelf"
     COMMANDS: ClassVar = {_provider}
-    BINDINGS: ClassVar[list[BindingType]] = list(bindings_of(EVERYWHERE))
+    BINDINGS = bindings_of(EVERYWHERE)
 
     session: var[Session] = var(Session, always_update=True)
 
@@ -72,7 +72,7 @@ class BetafloorApp(App[int]):
     def _open_shelf(self) -> None:
         try:
             shelf = self.source.shelf()
-        except SourceTrouble as trouble:
+        except SourceError as trouble:
             self.post_message(ShelfTrouble(str(trouble)))
             return
         self.post_message(ShelfOpened(shelf))

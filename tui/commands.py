@@ -7,7 +7,7 @@ or of the app where its room is `everywhere`.
 
 from dataclasses import dataclass
 
-from textual.binding import Binding
+from textual.binding import Binding, BindingType
 
 EVERYWHERE = "everywhere"
 
@@ -80,7 +80,7 @@ COMMANDS: tuple[Command, ...] = (
             "Open what is under the cursor"),
     Command("mark", ("shelf", "bench", "shortlist", "part"), ("space",), "Space", "mark",
             "Mark the part for the shortlist, or take the mark off"),
-    Command("calculation", ("bench", "part", "shortlist"), ("c",), "c", "sheet", "Open the calculation sheet of the part"),
+    Command("calculation", ("bench", "part", "shortlist"), ("c",), "c", "sheet", "Open the calculation sheet"),
     Command("next-field", ("bench", "weights"), ("tab", "shift+tab"), "Tab", "field",
             "Go to the next field; with Shift to the one before. Up and Down do the same", own=True, typing=True),
     Command("change-word", ("bench",), ("left", "right"), "←→", "word",
@@ -98,7 +98,7 @@ def commands_of(room: str) -> tuple[Command, ...]:
     return tuple(one for one in COMMANDS if room in one.rooms)
 
 
-def bindings_of(room: str) -> list[Binding]:
+def bindings_of(room: str) -> list[BindingType]:
     """Textual's bindings of `room`.
 
     They take priority over the focused widget and are refused by `check_action` where a key is to be

@@ -1,6 +1,7 @@
 """The command palette, made from the table of commands."""
 
 from collections.abc import Callable
+from functools import partial
 
 from textual.command import DiscoveryHit, Hit, Hits, Provider
 
@@ -12,12 +13,11 @@ class Palette(Provider):
 
     def _commands(self) -> list[tuple[Command, Callable[[], object]]]:
         room = getattr(self.screen, "room", "")
-        found = []
+        found: list[tuple[Command, Callable[[], object]]] = []
         for one in (*commands_of(room), *commands_of(EVERYWHERE)):
-            if one.own or one.argument or one.name in ("palette", "back"):
-                continue
-            place = "app" if EVERYWHERE in one.rooms else "screen"
-            found.append((one, lambda one=one, place=place: self._do(f"{place}.{one.action}")))
+            if not (one.own or one.argument or one.name in ("palette", "back")):
+                place = "app" if EVERYWHERE in one.rooms else "screen"
+                found.append((one, partial(self._do, f"{place}.{one.action}")))
         return found
 
     async def _do(self, action: str) -> None:

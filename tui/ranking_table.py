@@ -8,7 +8,7 @@ from numpy.typing import NDArray
 from engine import show
 from engine.ranking import Ranking, Verdict
 
-from .shelf_table import NOT_KNOWN, short
+from .shelf_table import NOT_KNOWN
 from .widgets.lines_view import Column
 
 
@@ -44,7 +44,7 @@ def columns(ranking: Ranking, marked: Callable[[str], bool]) -> list[Column]:
         Column("worst check", 0, lambda row: names[int(ranking.worst[row])]),
         Column("RB", 5, lambda row: ohms(float(rb[row])), right=True),
         Column("RBE", 5, lambda row: ohms(float(rbe[row])), right=True, spare=2),
-        Column("TJ", 3, lambda row: short(float(tj[row]), "", 3), right=True, spare=1),
+        Column("TJ", 3, lambda row: NOT_KNOWN if tj[row] != tj[row] else f"{tj[row]:.0f}", right=True, spare=1),
         Column("stock", 5, lambda row: str(shelf.stock[row]), right=True),
         Column("score", 5, lambda row: _score(ranking, row), right=True),
     ]

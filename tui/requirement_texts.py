@@ -8,19 +8,19 @@ from pathlib import Path
 from .state import Draft
 
 
-class UnreadableRequirement(ValueError):
+class RequirementTextError(ValueError):
     """One line that says why a text is no requirement file."""
 
 
 def read(toml: str) -> tuple[Draft, dict[str, float]]:
-    """The draft and the weights of a requirement file. Raises UnreadableRequirement.
+    """The draft and the weights of a requirement file. Raises RequirementTextError.
 
     Values are taken as they are written; whether they make sense is said under the fields.
     """
     try:
         content = tomllib.loads(toml)
     except tomllib.TOMLDecodeError as error:
-        raise UnreadableRequirement(f"not a requirement file: {error}") from error
+        raise RequirementTextError(f"not a requirement file: {error}") from error
     weights = content.pop("weights", {})
     title, duty = content.pop("title", ""), content.pop("duty", "switch")
     texts = {key: _text(value) for key, value in _flat(content, "")}
@@ -29,17 +29,17 @@ def read(toml: str) -> tuple[Draft, dict[str, float]]:
 
 
 def read_file(path: Path) -> tuple[Draft, dict[str, float]]:
-    """The draft and the weights in a file. Raises UnreadableRequirement with the file's name."""
+    """The draft and the weights in a file. Raises RequirementTextError with the file's name."""
     try:
         text = path.read_text(encoding="utf-8")
     except OSError as error:
-        raise UnreadableRequirement(f"{path}: {error.strerror or error}") from error
+        raise RequirementTextError(f"{path}: {error.strerror or error}") from error
     except UnicodeDecodeError as error:
-        raise UnreadableRequirement(f"{path}: not a text in UTF-8") from error
+        raise RequirementTextError(f"{path}: not a text in UTF-8") from error
     try:
         return read(text)
-    except UnreadableRequirement as error:
-        raise UnreadableRequirement(f"{path}: {error}") from error
+    except RequirementTextError as error:
+        raise RequirementTextError(f"{path}: {error}") from error
 
 
 def _flat(table: Mapping[str, object], before: str) -> list[tuple[str, object]]:

@@ -65,6 +65,10 @@ class ShelfTable:
         return min(max((len(str(name)) for name in self.shelf.names), default=8), 18)
 
     @cached_property
+    def _structure_width(self) -> int:
+        return max((len(word) for word in self.structures()), default=10)
+
+    @cached_property
     def haystack(self) -> list[str]:
         """What a search looks through, one text a part, in lower case."""
         words = [self.shelf.structure_word(row) for row in range(len(self.shelf))]
@@ -76,11 +80,15 @@ class ShelfTable:
         shelf = self.shelf
         arrow = "▼" if descending else "▲"
         titles = ["type", "structure", "package", *(q.title for q in self.quantities)]
-        heads = [f"{i + 1} {title}{arrow if i == sort else ''}" for i, title in enumerate(titles)]
+        heads = [f"{i + 1} {title}{arrow if i == sort else ' '}" for i, title in enumerate(titles)]
         return [
             Column("", 1, lambda row: "*" if marked(str(shelf.names[row])) else ""),
-            Column(heads[0], self._name_width, lambda row: str(shelf.names[row])),
-            Column(heads[1], 14, lambda row: shelf.structure_word(row) or "not stated"),
+            Column(heads[0], 0, lambda row: str(shelf.names[row]), most=max(self._name_width, len(heads[0]))),
+            Column(
+                heads[1],
+                max(self._structure_width, len(heads[1])),
+                lambda row: shelf.structure_word(row) or "not stated",
+            ),
             Column(heads[2], 10, lambda row: str(shelf.package[row]) or NOT_KNOWN),
             *(
                 Column(head, max(q.width, len(head)), lambda row, q=q: q.words(float(q.values[row])), right=True)  # type: ignore[misc]

@@ -4,21 +4,21 @@ Every call opens the store, asks and closes it again: calls come from worker thr
 belongs to one thread. The store is imported at the first call, after the first paint.
 """
 
-from collections.abc import Mapping
-from pathlib import Path
+from collections.abc import Mapping, Sequence
 from typing import TYPE_CHECKING, Protocol
 
 if TYPE_CHECKING:
     from engine.part import Part
+    from engine.ranking import Ranking
     from engine.shelf import Shelf
 
 
-class SourceTrouble(Exception):
+class SourceError(Exception):
     """One line that says what is the matter with the shelf and how to mend it."""
 
 
 class Source(Protocol):
-    """A shelf file, or what stands for one in a test. Every method raises SourceTrouble."""
+    """A shelf file, or what stands for one in a test. Every method raises SourceError."""
 
     @property
     def name(self) -> str: ...
@@ -29,4 +29,12 @@ class Source(Protocol):
 
     def requirements(self) -> Mapping[str, str]:
         """Saved requirements: title → TOML text."""
+        ...
+
+    def keep_requirement(self, title: str, toml: str) -> str:
+        """Save a requirement; gives back what was done, in words."""
+        ...
+
+    def keep_shortlist(self, ranking: "Ranking", rows: Sequence[int]) -> str:
+        """Save some rows of a ranking as a shortlist; gives back what was done, in words."""
         ...

@@ -7,7 +7,7 @@ from textual.app import App
 
 from engine.part import Limit, Part
 from engine.shelf import Shelf
-from tui.source import SourceTrouble
+from tui.source import SourceError
 
 
 def screen_text(app: App[int]) -> str:
@@ -110,7 +110,7 @@ class FakeSource:
 
     def shelf(self) -> Shelf:
         if self.trouble:
-            raise SourceTrouble(self.trouble)
+            raise SourceError(self.trouble)
         return shelf_of(self.parts)
 
     def part(self, type_number: str) -> Part:

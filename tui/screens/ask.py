@@ -8,16 +8,20 @@ from textual.app import ComposeResult
 from textual.containers import Vertical
 from textual.widgets import Input, Static
 
+from ..commands import bindings_of
 from ..widgets.lines_of_screen import KeysLine
 from .base import Dialog
 
 
-class Ask(Dialog[str], room="ask"):
+class Ask(Dialog[str]):
     """Gives back what was written, or None.
 
     `doubt` may answer a text with a line that says what is wrong or must be confirmed; a text that was
     doubted once and is entered again unchanged counts as confirmed where `confirms` says so of the line.
     """
+
+    room = "ask"
+    BINDINGS = bindings_of("ask")
 
     DEFAULT_CSS = """
     Ask { align: center middle; }

@@ -1,14 +1,13 @@
 """What every screen shares: its room's keys, the title line, the footer, and the app's session."""
 
-from typing import TYPE_CHECKING, ClassVar, TypeVar, cast
+from typing import TYPE_CHECKING, TypeVar, cast
 
 from textual.app import ComposeResult
-from textual.binding import BindingType
 from textual.screen import ModalScreen, Screen
 from textual.widget import Widget
 from textual.widgets import Input
 
-from ..commands import bindings_of, command_of
+from ..commands import command_of
 from ..state import Session
 from ..widgets.lines_of_screen import KeysLine, TitleLine
 
@@ -27,16 +26,9 @@ def key_is_free(focused: Widget | None, action: str) -> bool | None:
 class Room(Screen[None]):
     """A screen with a name in `COMMANDS`."""
 
-    room: ClassVar[str]
-    heading: ClassVar[str]
-    HORIZONTAL_BREAKPOINTS: ClassVar[list[tuple[int, str]] | None] = [(0, "-narrow"), (110, "-wide")]
+    room: str
+    heading: str
     AUTO_FOCUS = ""
-
-    def __init_subclass__(cls, room: str = "", **kwargs: object) -> None:
-        if room:
-            cls.room = room
-            cls.BINDINGS = cast("list[BindingType]", bindings_of(room))
-        super().__init_subclass__(**kwargs)
 
     @property
     def desk(self) -> "BetafloorApp":
@@ -79,6 +71,9 @@ class Room(Screen[None]):
     def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:
         return key_is_free(self.focused, action)
 
+    def on_descendant_focus(self) -> None:
+        self.query_one(KeysLine).refresh(layout=True)
+
     def action_back(self) -> None:
         """Leave this screen."""
         self.dismiss()
@@ -87,14 +82,10 @@ class Room(Screen[None]):
 class Dialog(ModalScreen[Result]):
     """A small screen over another one, which it leaves with an answer or with None."""
 
-    room: ClassVar[str]
-    AUTO_FOCUS = ""
+    DEFAULT_CSS = "Dialog KeysLine { min-height: 3; }"  # covers the keys of the screen below
 
-    def __init_subclass__(cls, room: str = "", **kwargs: object) -> None:
-        if room:
-            cls.room = room
-            cls.BINDINGS = cast("list[BindingType]", bindings_of(room))
-        super().__init_subclass__(**kwargs)
+    room: str
+    AUTO_FOCUS = ""
 
     def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:
         return key_is_free(self.focused, action)

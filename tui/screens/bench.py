@@ -10,6 +10,7 @@ from textual.timer import Timer
 from textual.widgets import Static
 from textual.worker import get_current_worker
 
+from ..commands import bindings_of
 from ..messages import Progress, Ranked, Refused
 from ..state import Draft, Session
 from ..widgets.cells import wrap
@@ -23,11 +24,16 @@ if TYPE_CHECKING:
     from engine.requirement import Field
 
 PATIENCE = 0.08  # s without a key before the shelf is ranked again
+_OF_RANKING = ("open", "mark", "calculation", "verdicts", "move")
+_OF_FORM = ("next_field", "change_word")
 NEXT = "F6 loads an example; or fill in the fields with a star. The ranking follows as you type."
 
 
-class BenchScreen(Room, room="bench"):
+class BenchScreen(Room):
     """Form left, ranking right, reasons below; on a narrow screen form or ranking."""
+
+    room = "bench"
+    BINDINGS = bindings_of("bench")
 
     heading = "bench"
 
@@ -60,14 +66,14 @@ class BenchScreen(Room, room="bench"):
                 yield LinesView(id="ranking", empty=NEXT)
                 yield TextView(id="reasons")
 
-    async def on_mount(self) -> None:
+    def on_mount(self) -> None:
         super().on_mount()
         self.query_one(Form).enter()
         path, self.desk.first_requirement = self.desk.first_requirement, None
         if path is not None:
             from .load import load_file
 
-            await load_file(self.desk, path)
+            load_file(self.desk, path)
 
     # --- showing
 
@@ -269,7 +275,11 @@ class BenchScreen(Room, room="bench"):
         await self.app.push_screen(WeightsScreen())
 
     def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:
-        if action in ("open", "mark", "calculation", "verdicts") and self.focused is not self.query_one("#ranking"):
+        in_ranking = self.focused is not None and self.focused is self.query_one("#ranking")
+        in_form = self.query_one("#left") in (self.focused.ancestors if self.focused else ())
+        if action in _OF_RANKING and not in_ranking:
+            return False
+        if action in _OF_FORM and not in_form:
             return False
         return super().check_action(action, parameters)
 

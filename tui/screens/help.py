@@ -2,7 +2,7 @@
 
 from textual.app import ComposeResult
 
-from ..commands import COMMANDS, EVERYWHERE, Command
+from ..commands import COMMANDS, EVERYWHERE, Command, bindings_of
 from ..widgets.cells import wrap
 from ..widgets.text_view import TextView
 from .base import Room
@@ -21,27 +21,34 @@ ROOMS = {
 
 
 def help_lines(here: str, width: int) -> list[str]:
-    """The help text, the screen `here` first."""
-    rooms = sorted(ROOMS, key=lambda room: (room != here, list(ROOMS).index(room)))
-    lines = ["What the words mean", ""]
+    """The help text: the keys of the screen `here`, those that work everywhere, the words, the other screens."""
+    lines = _keys(ROOMS[here], here, width) if here in ROOMS else []
+    lines += _keys("Everywhere", EVERYWHERE, width)
+    lines += ["What the words mean", ""]
     for word, meaning in WORDS:
         first, *rest = wrap(meaning, width - 20)
         lines += [f"  {word:<17} {first}", *(" " * 20 + line for line in rest)]
-    for title, room in [("Everywhere", EVERYWHERE), *((ROOMS[room], room) for room in rooms)]:
-        lines += ["", title + ("  (this screen)" if room == here else ""), ""]
-        for one in COMMANDS:
-            if room in one.rooms:
-                lines += _entry(one, width)
+    lines.append("")
+    for room, title in ROOMS.items():
+        lines += _keys(title, room, width) if room != here else []
     return lines
+
+
+def _keys(title: str, room: str, width: int) -> list[str]:
+    entries = [line for one in COMMANDS if room in one.rooms for line in _entry(one, width)]
+    return [title, "", *entries, ""]
 
 
 def _entry(one: Command, width: int) -> list[str]:
     first, *rest = wrap(one.sentence, width - 20)
-    return [f"  {one.shown:<7} {one.label:<9} {first}", *(" " * 20 + line for line in rest)]
+    return [f"  {one.shown:<6} {one.label:<10} {first}", *(" " * 20 + line for line in rest)]
 
 
-class HelpScreen(Room, room="help"):
+class HelpScreen(Room):
     """A text to scroll."""
+
+    room = "help"
+    BINDINGS = bindings_of("help")
 
     heading = "help"
 

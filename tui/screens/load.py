@@ -7,8 +7,8 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from ..files import why, write_whole
-from ..requirement_texts import UnreadableRequirement, examples, read, read_file
-from ..source import SourceTrouble
+from ..requirement_texts import RequirementTextError, examples, read, read_file
+from ..source import SourceError
 from ..state import Draft
 from .ask import Ask, Doubt, doubt_file
 from .picker import Choice, Picker
@@ -38,11 +38,11 @@ def use(desk: "BetafloorApp", draft: Draft, weights: dict[str, float]) -> None:
     )
 
 
-async def load_file(desk: "BetafloorApp", path: Path) -> None:
+def load_file(desk: "BetafloorApp", path: Path) -> None:
     """Load a requirement file; say in one line why it cannot be read."""
     try:
         use(desk, *read_file(path))
-    except UnreadableRequirement as error:
+    except RequirementTextError as error:
         desk.notify(str(error), title="Not loaded", severity="error", markup=False)
 
 
@@ -51,7 +51,7 @@ async def pick_requirement(desk: "BetafloorApp") -> None:
     shipped = examples()
     try:
         saved = dict(desk.source.requirements())
-    except SourceTrouble as trouble:
+    except SourceError as trouble:
         saved = {}
         desk.notify(str(trouble), title="Saved requirements cannot be read", severity="error", markup=False)
     choices = [
@@ -77,9 +77,9 @@ async def pick_requirement(desk: "BetafloorApp") -> None:
 
 
 async def _ask_file(desk: "BetafloorApp") -> None:
-    async def take(answer: str | None) -> None:
+    def take(answer: str | None) -> None:
         if answer is not None:
-            await load_file(desk, Path(answer).expanduser())
+            load_file(desk, Path(answer).expanduser())
 
     def doubt(text: str) -> Doubt | None:
         return None if Path(text).expanduser().is_file() else Doubt(f"There is no file {text}.", final=True)

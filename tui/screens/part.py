@@ -7,7 +7,8 @@ from textual.app import ComposeResult
 from textual.containers import Horizontal, Vertical
 from textual.widgets import Static
 
-from ..source import SourceTrouble
+from ..commands import bindings_of
+from ..source import SourceError
 from ..state import Session
 from ..widgets.cells import wrap
 from ..widgets.lines_of_screen import TitleLine
@@ -23,8 +24,11 @@ SECTIONS = ("limits", "gain", "checks")
 COLD = -40.0  # °C, where no requirement states the coldest ambient
 
 
-class PartScreen(Room, room="part"):
+class PartScreen(Room):
     """On a wide screen all three sections, on a narrow one the chosen one."""
+
+    room = "part"
+    BINDINGS = bindings_of("part")
 
     heading = "part"
 
@@ -75,7 +79,7 @@ class PartScreen(Room, room="part"):
         session = self.session
         try:
             part = self.desk.source.part(self.type_number)
-        except SourceTrouble as trouble:
+        except SourceError as trouble:
             self.app.call_from_thread(self._say_trouble, str(trouble))
             return
         told = None

@@ -8,6 +8,7 @@ from textual.app import ComposeResult
 from textual.containers import Vertical
 from textual.widgets import Static
 
+from ..commands import bindings_of
 from ..widgets.lines_of_screen import KeysLine
 from ..widgets.lines_view import Column, LinesView
 from .base import Dialog
@@ -22,12 +23,16 @@ class Choice:
     more: str = ""
 
 
-class Picker(Dialog[str], room="picker"):
+class Picker(Dialog[str]):
     """Gives back the value of the choice, or None."""
+
+    room = "picker"
+    BINDINGS = bindings_of("picker")
 
     DEFAULT_CSS = """
     Picker { align: center middle; }
-    Picker #box { width: 74; max-width: 96%; height: auto; max-height: 80%; border: solid $primary; background: $surface; }
+    Picker #box { width: 74; max-width: 96%; height: auto; max-height: 80%; border: solid $primary; }
+    Picker #box { background: $surface; }
     Picker #title { height: auto; text-style: bold; padding: 0 1; }
     Picker LinesView { height: auto; max-height: 16; }
     """

@@ -5,6 +5,7 @@ from typing import TYPE_CHECKING
 from textual import work
 from textual.app import ComposeResult
 
+from ..commands import bindings_of
 from ..state import Session
 from ..widgets.cells import wrap
 from ..widgets.lines_of_screen import TitleLine
@@ -15,8 +16,11 @@ if TYPE_CHECKING:
     from ..exports import Sheet
 
 
-class SheetScreen(Room, room="sheet"):
+class SheetScreen(Room):
     """A text to scroll."""
+
+    room = "sheet"
+    BINDINGS = bindings_of("sheet")
 
     heading = "calculation sheet"
 

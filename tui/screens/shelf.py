@@ -8,6 +8,7 @@ from textual.app import ComposeResult
 from textual.containers import Horizontal
 from textual.widgets import Input, Static
 
+from ..commands import bindings_of
 from ..state import Session, ShelfFilter
 from ..widgets.lines_view import LinesView
 from .base import Room
@@ -18,8 +19,11 @@ if TYPE_CHECKING:
 HINT = "Next: F3 states a requirement and ranks these parts; Enter opens a part."
 
 
-class ShelfScreen(Room, room="shelf"):
+class ShelfScreen(Room):
     """The first screen."""
+
+    room = "shelf"
+    BINDINGS = bindings_of("shelf")
 
     heading = "shelf"
 

@@ -4,7 +4,8 @@ from textual import on, work
 from textual.app import ComposeResult
 from textual.widgets import Static
 
-from ..source import SourceTrouble
+from ..commands import bindings_of
+from ..source import SourceError
 from ..state import Session
 from ..widgets.lines_view import LinesView
 from .base import Room
@@ -12,8 +13,11 @@ from .base import Room
 NOTHING = "No part is marked. Space marks the part under the cursor, on the shelf and on the bench."
 
 
-class ShortlistScreen(Room, room="shortlist"):
+class ShortlistScreen(Room):
     """Marked parts, in ranked order once there is a ranking."""
+
+    room = "shortlist"
+    BINDINGS = bindings_of("shortlist")
 
     heading = "shortlist"
 
@@ -92,9 +96,10 @@ class ShortlistScreen(Room, room="shortlist"):
         if self._row is not None and self.session.shelf is not None:
             self.desk.session = self.session.marked(str(self.session.shelf.names[self._row]))
 
-    async def action_back(self) -> None:
+    def action_back(self) -> None:
         """To the bench where there is a ranking, else to the shelf."""
-        await (self.desk.action_open_shelf() if self.session.ranking is None else self.desk.action_open_bench())
+        desk = self.desk
+        self.call_later(desk.action_open_shelf if self.session.ranking is None else desk.action_open_bench)
 
     def _ready(self) -> bool:
         session = self.session
@@ -117,7 +122,7 @@ class ShortlistScreen(Room, room="shortlist"):
             return
         try:
             says = self.desk.source.keep_shortlist(session.ranking, rows)
-        except SourceTrouble as trouble:
+        except SourceError as trouble:
             self.app.call_from_thread(
                 self.notify, str(trouble), title="Not saved", severity="error", markup=False
             )  # fmt: skip

@@ -8,6 +8,7 @@ from textual.app import ComposeResult
 from textual.containers import VerticalScroll
 from textual.widgets import Static
 
+from ..commands import bindings_of
 from ..state import Session
 from ..widgets.form import Form
 from .base import Room
@@ -26,8 +27,11 @@ MEANINGS: Mapping[str, str] = {
 }
 
 
-class WeightsScreen(Room, room="weights"):
+class WeightsScreen(Room):
     """One field a criterion."""
+
+    room = "weights"
+    BINDINGS = bindings_of("weights")
 
     heading = "weights"
 

@@ -22,6 +22,7 @@ def fit(text: str, width: int, *, right: bool = False) -> str:
 
 def wrap(text: str, width: int) -> list[str]:
     """`text` in lines of at most `width` cells, broken between words (a longer word is cut)."""
+    width = max(width, 4)
     lines: list[str] = []
     line = ""
     for word in clean(text).split(" "):

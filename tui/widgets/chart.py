@@ -4,7 +4,7 @@ Curves are told apart by their dashes and their names, marks by their signs; col
 """
 
 import math
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
 from .cells import fit
@@ -21,8 +21,8 @@ class Series:
     """A named curve through points in rising x; straight between them on log–log paper, gaps where y is NaN."""
 
     name: str
-    x: Sequence[float]
-    y: Sequence[float]
+    x: Iterable[float]
+    y: Iterable[float]
 
 
 @dataclass(frozen=True, slots=True)
@@ -105,11 +105,9 @@ class _Paper:
 
     def curve(self, one: Series, number: int) -> None:
         on, off = DASHES[number % len(DASHES)] if not self.plain else (1, 0)
-        drawn = 0
-        for column, row in self._path(one):
+        for drawn, dot in enumerate(self._path(one)):
             if drawn % (on + off) < on:
-                self.dots.setdefault((column, row), number)
-            drawn += 1
+                self.dots.setdefault(dot, number)
 
     def _path(self, one: Series) -> list[tuple[int, int]]:
         """The dots a solid curve would take, in order and without gaps."""

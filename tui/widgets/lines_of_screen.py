@@ -42,7 +42,12 @@ class KeysLine(Widget):
         super().__init__()
         own = commands_of(room)
         general = commands_of(EVERYWHERE) if room not in ("ask", "picker") else ()
-        self.commands: tuple[Command, ...] = (*own, *general)
+        self._commands: tuple[Command, ...] = (*own, *general)
+
+    @property
+    def commands(self) -> tuple[Command, ...]:
+        """The commands whose keys work where the cursor is."""
+        return tuple(one for one in self._commands if self.screen.check_action(one.action, ()))
 
     def get_content_height(self, container: object, viewport: object, width: int) -> int:
         return len(key_lines(self.commands, width))

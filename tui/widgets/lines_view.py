@@ -2,7 +2,7 @@
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-from typing import ClassVar
+from typing import ClassVar, Protocol, SupportsInt
 
 from rich.segment import Segment
 from rich.style import Style
@@ -18,15 +18,24 @@ from .cells import fit
 LEAST_ELASTIC = 10  # cells that the elastic column keeps
 
 
+class Rows(Protocol):
+    """Row numbers in the order they are shown: a list, a range or an array."""
+
+    def __len__(self) -> int: ...
+
+    def __getitem__(self, place: int, /) -> SupportsInt: ...
+
+
 @dataclass(frozen=True, slots=True)
 class Column:
     """One column: its heading, its width and the text of a row's cell."""
 
     title: str
-    width: int  # in cells; 0 for the elastic column, which takes what is left
+    width: int  # in cells; 0 for the one elastic column, which takes what is left
     cell: Callable[[int], str]  # row number of the data → text
     right: bool = False
-    spare: int = 0  # columns with the largest number give way first where the view is too narrow
+    most: int = 0  # what an elastic column takes at most; 0 for no limit
+    spare: int = 0  # where the view is too narrow, the largest number gives way first, and 0 never
 
 
 class LinesView(ScrollView, can_focus=True):
@@ -80,7 +89,7 @@ class LinesView(ScrollView, can_focus=True):
         super().__init__(id=id)
         self.empty = empty  # what is said where there are no rows
         self._columns: tuple[Column, ...] = ()
-        self._order: Sequence[int] = ()
+        self._order: Rows = ()
         self._emphasis: Callable[[int], bool] = lambda row: False
         self._layout: tuple[int, tuple[tuple[Column, int], ...]] = (-1, ())
         self.cursor = 0  # place in the order
@@ -90,7 +99,7 @@ class LinesView(ScrollView, can_focus=True):
     def show(
         self,
         columns: Sequence[Column],
-        order: Sequence[int],
+        order: Rows,
         *,
         cursor: int = 0,
         emphasis: Callable[[int], bool] = lambda row: False,
@@ -176,10 +185,10 @@ class LinesView(ScrollView, can_focus=True):
 def layout(columns: Sequence[Column], room: int) -> list[tuple[Column, int]]:
     """The columns that fit into `room` cells with a blank between two, each with its width."""
     shown = list(columns)
-    while len(shown) > 1 and _needed(shown) > room:
+    while _needed(shown) > room and any(c.spare for c in shown):
         shown.remove(max(shown, key=lambda c: c.spare))
-    left = room - _needed(shown)
-    return [(c, c.width or LEAST_ELASTIC + max(left, 0)) for c in shown]
+    elastic = LEAST_ELASTIC + max(room - _needed(shown), 0)
+    return [(c, c.width or (min(elastic, c.most) if c.most else elastic)) for c in shown]
 
 
 def _needed(columns: Sequence[Column]) -> int:

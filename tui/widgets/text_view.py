@@ -43,7 +43,8 @@ class TextView(ScrollView, can_focus=True):
 
     def _lay_out(self) -> None:
         width = self.scrollable_content_region.width
-        self.lines = self._source(max(width, 20)) if callable(self._source) else self._source
+        if width:
+            self.lines = self._source(width) if callable(self._source) else self._source
         self.virtual_size = Size(0, len(self.lines))
         self.refresh()
 
