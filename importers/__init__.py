@@ -1,0 +1,1 @@
+"""Files in, drafts and problems out; nothing here touches a database."""
