@@ -89,7 +89,9 @@ def _numbers(r: Requirement) -> Numbers:
         stated = r.number("load.current")
         current = (stated * (1 - tolerance), stated * (1 + tolerance))
     else:
-        stated = r.number("load.resistance") if r.has("load.resistance") else r.number("supply.max") / r.number("load.current")
+        stated = r.number("load.resistance")
+        if np.isnan(stated):
+            stated = r.number("supply.max") / r.number("load.current")
         cold, hot = ((COPPER + t) / (COPPER + 20) if kind == "coil" else 1.0 for t in ambient)
         resistance = (stated * (1 - tolerance) * cold, stated * (1 + tolerance) * hot)
     if high_side:
@@ -100,8 +102,7 @@ def _numbers(r: Requirement) -> Numbers:
     else:
         drive = (r.number("drive.high_min"), r.number("drive.high_max"))
         opened, off_level, injected = False, r.number("drive.low_max"), 0.0
-    clamp = {"diode": 0.0, "zener": r.number("load.clamp_voltage") * (1 + r.number("load.clamp_tolerance")), "none": np.inf}
-    overshoot = clamp[r.word("load.clamp")] + r.number("load.clamp_drop") if kind == "coil" and r.word("load.clamp") != "none" else (np.inf if kind == "coil" else 0.0)
+    overshoot = _overshoot(r) if kind == "coil" else 0.0
     return Numbers(
         r.word("position"), (r.number("supply.min"), r.number("supply.max")), kind, resistance, current,
         r.number("load.inrush") if kind == "lamp" else 1.0, overshoot, drive, off_level, injected, opened,
@@ -110,6 +111,13 @@ def _numbers(r: Requirement) -> Numbers:
         r.number("limits.on_voltage_max"), r.number("limits.off_current_max"), r.number("limits.turn_off_max"),
         r.number("limits.junction_max"),
     )  # fmt: skip
+
+
+def _overshoot(r: Requirement) -> float:
+    if r.word("load.clamp") == "none":
+        return np.inf
+    zener = r.number("load.clamp_voltage") * (1 + r.number("load.clamp_tolerance"))
+    return r.number("load.clamp_drop") + (zener if r.word("load.clamp") == "zener" else 0.0)
 
 
 def jobs(count: int = 60, seed: int = 1) -> list[Job]:

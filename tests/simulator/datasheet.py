@@ -14,7 +14,7 @@ from .transient import step_times
 
 COLUMNS = (
     "part", "polarity", "package", "maker", "symbol", "min", "typ", "max", "unit",
-    "ic", "ib1", "ib2", "vce", "vcb", "vcc", "tj", "ta", "tc", "source",
+    "ic", "ib1", "ib2", "vce", "vbe", "vcb", "vcc", "tj", "ta", "tc", "source",
 )  # fmt: skip
 UNITS = {"hFE": "", "TJ": "degC", "PD": "W", "RthJA": "K/W", "RthJC": "K/W", "ton": "s", "toff": "s"}
 
@@ -110,7 +110,9 @@ def _gains(sheet: _Sheet) -> None:
         high = sheet.most(values) if share == middle and sheet.chance(0.8) else None
         sheet.add("hFE", sheet.least(values), high, ic=ic, vce=vce, tj=25)
         if share == middle and sheet.chance(0.35):
-            sheet.add("hFE", sheet.least(gain(kind, ic, vce, -55.0)), ic=ic, vce=vce, tj=-55)
+            cold = gain(kind, ic, vce, -55.0)
+            if cold.min() > 5:
+                sheet.add("hFE", sheet.least(cold), ic=ic, vce=vce, tj=-55)
 
 
 def _saturations(sheet: _Sheet) -> None:
@@ -136,6 +138,11 @@ def _leakage(sheet: _Sheet) -> None:
     leak = kind.devices.leakage
     n = len(kind.devices)
     vcb = round_down(0.8 * kind.vceo, 1)
+    if sheet.chance(0.6 if kind.darlington else 0.2):
+        for t in (25.0, 125.0):
+            short = solve(kind.devices, np.full(n, t), lambda vb, vc, ib, ic, _: (vb, vc - vcb), off=np.full(n, vcb))
+            if short.converged.all():
+                sheet.add("ICES", high=sheet.most(short.ic), vce=vcb, vbe=0.0, tj=t)
     if not sheet.chance(0.92):
         return
     sheet.add("ICBO", high=sheet.most(leak(np.full(n, 25.0))), vcb=vcb, tj=25)

@@ -1,7 +1,5 @@
 """Whether any network of preferred values lets a type do a job: a search with the solver, confirmed by ngspice."""
 
-from dataclasses import replace
-
 import numpy as np
 
 from .circuits import Numbers
@@ -69,7 +67,7 @@ def screen(kind: Type, n: Numbers, networks: list[Network], *, on_only: bool = F
     shape = (len(networks), -1)
     point = by_solver(kind.devices, _joined(on), kind.polarity)
     limit = (2.5 if kind.darlington else 1.0) if np.isnan(n.on_voltage) else n.on_voltage
-    margin = np.asarray(np.nan_to_num(limit / point.vce.reshape(shape).max(axis=1)))
+    margin: Floats = np.nan_to_num(limit / point.vce.reshape(shape).max(axis=1))
     if on_only:
         return margin
     margin = np.minimum(margin, n.drive_current * 1.0001 / point.drive.reshape(shape).max(axis=1))
@@ -80,7 +78,8 @@ def screen(kind: Type, n: Numbers, networks: list[Network], *, on_only: bool = F
     off = [off_corners(kind, n, *networks[k], rows, hot) for k in kept]
     off_point = by_solver(kind.devices, _joined(off), kind.polarity)
     margin[kept] = np.minimum(margin[kept], n.off_current / off_point.ic.reshape(len(kept), -1).max(axis=1))
-    return np.asarray(np.nan_to_num(margin))
+    worst: Floats = np.nan_to_num(margin)
+    return worst
 
 
 def _deciding(c: Circuits, n: Numbers) -> Circuits:
@@ -93,15 +92,21 @@ def _deciding(c: Circuits, n: Numbers) -> Circuits:
 
 
 def _joined(circuits: list[Circuits]) -> Circuits:
-    arrays = {
-        name: np.concatenate([getattr(one, name) for one in circuits])
-        for name in ("row", "t", "vs", "load", "vd", "rb", "rbe", "injected")
-    }
-    return replace(circuits[0], **arrays)
+    def joined(name: str) -> Floats:
+        return np.concatenate([getattr(one, name) for one in circuits])
+
+    first = circuits[0]
+    row = np.concatenate([one.row for one in circuits])
+    columns = (joined(name) for name in ("t", "vs", "load", "vd", "rb", "rbe", "injected"))
+    t, vs, load, vd, rb, rbe, injected = columns
+    return Circuits(row, t, vs, load, vd, rb, rbe, injected, first.constant, first.off)
 
 
 def find(kind: Type, ratings: Ratings, n: Numbers, tries: int = 4) -> tuple[Network, dict[str, float]] | None:
-    """A network with which every device does the job at every corner by ngspice, and its extremes; None if none is found."""
+    """A network with which every device does the job at the deciding corners by ngspice, and its extremes.
+
+    None when the search finds none.
+    """
     if not possible(kind, ratings, n) or not np.isfinite(n.overshoot):
         return None
     networks = candidates(kind, n)

@@ -41,7 +41,10 @@ class Devices:
 
     def take(self, rows: NDArray[np.intp]) -> "Devices":
         """The devices `rows`, repeated and ordered as asked."""
-        pick = lambda column: None if column is None else column[rows]  # noqa: E731
+
+        def pick(column: Floats | None) -> Floats | None:
+            return None if column is None else column[rows]
+
         return Devices(
             {name: column[rows] for name, column in self.output.items()},
             None if self.driver is None else {name: column[rows] for name, column in self.driver.items()},

@@ -38,7 +38,9 @@ class Circuits:
 
     def take(self, rows: NDArray[np.intp]) -> "Circuits":
         """Some of the circuits."""
-        arrays = {one.name: getattr(self, one.name)[rows] for one in fields(self) if one.name not in ("constant", "off")}
+        arrays = {
+            one.name: getattr(self, one.name)[rows] for one in fields(self) if one.name not in ("constant", "off")
+        }
         return replace(self, **arrays)
 
 
@@ -60,17 +62,15 @@ def by_solver(devices: Devices, c: Circuits, polarity: str) -> Points:
     """The operating points by the fast solver."""
     gb, gbe = 1 / c.rb, 1 / c.rbe
 
-    def boundary(
-        vb: Floats, vc: Floats, ib: Floats, ic: Floats, rows: NDArray[np.intp]
-    ) -> tuple[Floats, Floats]:
+    def boundary(vb: Floats, vc: Floats, ib: Floats, ic: Floats, rows: NDArray[np.intp]) -> tuple[Floats, Floats]:
         across = c.vs[rows] - vc
         drawn = c.load[rows] * np.tanh(across / 0.05) if c.constant else across / c.load[rows]
         return (c.vd[rows] - vb) * gb[rows] - vb * gbe[rows] + c.injected[rows] - ib, drawn - ic
 
     point = solve(devices.take(c.row), c.t, boundary, off=c.vs if c.off else None)
     bad = ~point.converged
-    values = [np.where(bad, np.nan, column) for column in (point.vbe, point.vce, point.ib, point.ic)]
-    return Points(*values, drive=(c.vd - values[0]) * gb)
+    vbe, vce, ib, ic = (np.where(bad, np.nan, column) for column in (point.vbe, point.vce, point.ib, point.ic))
+    return Points(vbe, vce, ib, ic, drive=(c.vd - vbe) * gb)
 
 
 def by_ngspice(devices: Devices, c: Circuits, polarity: str, chunk: int = 40) -> Points:
@@ -130,10 +130,10 @@ def on_corners(kind: Type, n: Numbers, rb: float, rbe: float | None, rows: NDArr
                 vd = vs - level if n.position == "high side" else level
                 for load in n.current if n.load == "constant current" else n.resistance:
                     table.append((t, vs, load, vd, r1, r2))
-    columns = np.array(table).T.repeat(len(rows), axis=1)
+    t_all, vs_all, load_all, vd_all, rb_all, rbe_all = np.array(table).T.repeat(len(rows), axis=1)
     row = np.tile(rows, len(table))
-    zero = np.zeros(len(row))
-    return Circuits(row, *columns, zero, constant=n.load == "constant current", off=False)
+    constant = n.load == "constant current"
+    return Circuits(row, t_all, vs_all, load_all, vd_all, rb_all, rbe_all, np.zeros(len(row)), constant, off=False)
 
 
 def off_corners(kind: Type, n: Numbers, rb: float, rbe: float | None, rows: NDArray[np.intp], tj: Floats) -> Circuits:
@@ -142,7 +142,10 @@ def off_corners(kind: Type, n: Numbers, rb: float, rbe: float | None, rows: NDAr
     heavy = n.current[1] if n.load == "constant current" else n.resistance[0]
     size = len(rows)
     values = [np.inf] if n.off_open else [rb * (1 + s * n.tolerance) + n.drive_resistance for s in (-1, 1)]
-    full = lambda value: np.full(size * len(values), value)  # noqa: E731
+
+    def full(value: float) -> Floats:
+        return np.full(size * len(values), value)
+
     return Circuits(
         np.tile(rows, len(values)), np.tile(tj, len(values)), full(n.supply[1]), full(heavy), full(n.off_level),
         np.repeat(values, size), full(shunt), full(n.off_injected), n.load == "constant current", True,

@@ -70,7 +70,7 @@ def simulate_fit(
     """Of a part that the engine calls fitting: what it misses in the simulator, which bounds break, the extremes."""
     rb, rbe = network_of(ranking, row)
     found = judge(kind, n, rb, rbe, by_ngspice) if thorough else confirm(kind, n, rb, rbe)
-    if n.load == "resistive" and not np.isnan(n.turn_off):
+    if n.load == "resistive" and not np.isnan([n.turn_off, n.frequency]).all():
         found |= switching_times(kind, n, rb, rbe)
     return shortfalls(kind, ratings, n, found), broken_bounds(bounds_of(ranking, row), found), found
 
