@@ -96,6 +96,10 @@ class BetafloorApp(App[int]):
 
         warm()
 
+    def tell(self, words: str, *, title: str = "", wrong: bool = False) -> None:
+        """Tell the user something in passing; the words are data, not markup."""
+        self.notify(words, title=title, severity="error" if wrong else "information", timeout=8, markup=False)
+
     # --- from screen to screen
 
     async def action_open_shelf(self) -> None:
@@ -122,7 +126,7 @@ class BetafloorApp(App[int]):
     async def open_sheet(self, row: int) -> None:
         """Show the calculation sheet of one part under the requirement that was last judged."""
         if self.session.ranking is None:
-            self.notify("State a requirement first: F3 goes to the bench.", title="No sheet yet", markup=False)
+            self.tell("State a requirement first: F3 goes to the bench.", title="No sheet yet")
             return
         from .screens.sheet import SheetScreen
 

@@ -80,7 +80,7 @@ class ShelfTable:
         shelf = self.shelf
         arrow = "▼" if descending else "▲"
         titles = ["type", "structure", "package", *(q.title for q in self.quantities)]
-        heads = [f"{i + 1} {title}{arrow if i == sort else ' '}" for i, title in enumerate(titles)]
+        heads = [f"{i + 1}{arrow if i == sort else ' '}{title}" for i, title in enumerate(titles)]
         return [
             Column("", 1, lambda row: "*" if marked(str(shelf.names[row])) else ""),
             Column(heads[0], 0, lambda row: str(shelf.names[row]), most=max(self._name_width, len(heads[0]))),

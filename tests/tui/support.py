@@ -1,13 +1,23 @@
 """Invented parts, a source without a file, and the text of a screen."""
 
-from collections.abc import Mapping
-from dataclasses import dataclass, field
+from collections.abc import AsyncIterator, Mapping, Sequence
+from contextlib import asynccontextmanager
+from dataclasses import dataclass, field, replace
+from typing import TypeVar
 
 from textual.app import App
+from textual.pilot import Pilot as TextualPilot
+from textual.widget import Widget
 
 from engine.part import Limit, Part
+from engine.ranking import Ranking
 from engine.shelf import Shelf
+from tui.app import BetafloorApp
+from tui.screens.bench import BenchScreen
 from tui.source import SourceError
+from tui.state import Draft, Session
+
+W = TypeVar("W", bound=Widget)
 
 
 def screen_text(app: App[int]) -> str:
@@ -106,7 +116,7 @@ class FakeSource:
     trouble: str = ""
     name: str = "test shelf"
     requirements_kept: dict[str, str] = field(default_factory=dict)
-    shortlists: list[object] = field(default_factory=list)
+    shortlists: list[list[str]] = field(default_factory=list)
 
     def shelf(self) -> Shelf:
         if self.trouble:
@@ -118,3 +128,67 @@ class FakeSource:
 
     def requirements(self) -> Mapping[str, str]:
         return self.requirements_kept
+
+    def keep_requirement(self, title: str, toml: str) -> str:
+        self.requirements_kept[title] = toml
+        return f"Saved: {title}"
+
+    def keep_shortlist(self, ranking: Ranking, rows: Sequence[int]) -> str:
+        self.shortlists.append([str(ranking.shelf.names[row]) for row in rows])
+        return f"Saved: {len(rows)} parts"
+
+
+class Pilot:
+    """Presses keys and waits until the screen has come to rest: no worker runs, no timer is due."""
+
+    def __init__(self, app: BetafloorApp, pilot: TextualPilot[int]) -> None:
+        self.app, self.pilot = app, pilot
+
+    async def rest(self) -> None:
+        """Until every worker is done and the last ranking belongs to the last draft."""
+        for _ in range(200):
+            await self.pilot.pause()
+            await self.app.workers.wait_for_complete()
+            await self.pilot.pause()
+            bench = self.app.screen
+            if not (isinstance(bench, BenchScreen) and bench.waiting):
+                return
+        raise AssertionError("the screen does not come to rest")
+
+    async def press(self, *keys: str) -> None:
+        await self.pilot.press(*keys)
+        await self.rest()
+
+    async def write(self, text: str) -> None:
+        """Write a text, key by key."""
+        await self.press(*(_KEYS.get(c, c) for c in text))
+
+    @property
+    def text(self) -> str:
+        return screen_text(self.app)
+
+    @property
+    def session(self) -> Session:
+        return self.app.session
+
+    def find(self, kind: type[W], selector: str = "*") -> W:
+        """The one widget of a kind on the screen."""
+        return self.app.screen.query_one(selector if selector != "*" else kind.__name__, kind)
+
+    async def fill(self, texts: Mapping[str, str] = COIL, title: str = "Valve") -> None:
+        """Go to the bench and put a draft into the form."""
+        await self.press("f3")
+        self.app.session = replace(self.app.session, draft=Draft("switch", title, texts))
+        await self.rest()
+
+
+_KEYS = {" ": "space", "/": "slash", ".": "full_stop", "-": "minus", "_": "underscore", "[": "left_square_bracket"}
+
+
+@asynccontextmanager
+async def running(app: BetafloorApp, size: tuple[int, int] = (80, 24)) -> AsyncIterator[Pilot]:
+    """The app on a screen of `size`, its shelf opened."""
+    async with app.run_test(size=size) as pilot:
+        one = Pilot(app, pilot)
+        await one.rest()
+        yield one

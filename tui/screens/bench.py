@@ -128,12 +128,18 @@ class BenchScreen(Room):
             self.session, draft=Draft(duty, title, texts), stale=self.session.ranking is not None
         )
 
+    @property
+    def waiting(self) -> bool:
+        """Whether a ranking is due soon."""
+        return self._timer is not None
+
     def _judge_soon(self) -> None:
         if self._timer is not None:
             self._timer.stop()
         self._timer = self.set_timer(PATIENCE, self._judge)
 
     def _judge(self) -> None:
+        self._timer = None
         session = self.session
         if session.shelf is not None and session.draft.texts:
             self._judge_in_thread(session)

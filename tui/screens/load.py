@@ -21,19 +21,25 @@ _FILE, _EMPTY, _EXAMPLE, _SAVED = "file", "empty", "example:", "saved:"
 
 def use(desk: "BetafloorApp", draft: Draft, weights: dict[str, float]) -> None:
     """Put a draft into the form; the last ranking stays, stale, until this one is judged."""
-    from .bench import form_fields
+    from engine.duty import duties
+    from engine.rank import DEFAULT_WEIGHTS
 
-    known = {field.key for field in form_fields(draft.duty)}
-    strangers = sorted(draft.texts.keys() - known)
+    if draft.duty not in duties():
+        known = ", ".join(sorted(duties()))
+        says = f"duty {draft.duty!r} is not known; known are: {known}"
+        desk.tell(says, title="Not loaded", wrong=True)
+        return
+    known_keys = {field.key for field in duties()[draft.duty].fields}
+    strangers = sorted(
+        (draft.texts.keys() - known_keys) | {f"weights.{name}" for name in weights.keys() - DEFAULT_WEIGHTS}
+    )
     if strangers:
-        desk.notify(
-            f"Left out, as this duty has no such field: {', '.join(strangers)}", severity="warning", markup=False
-        )
-    texts = {key: text for key, text in draft.texts.items() if key in known}
+        desk.tell(f"Left out, not known to this duty: {', '.join(strangers)}", wrong=True)
+    texts = {key: text for key, text in draft.texts.items() if key in known_keys}
     desk.session = replace(
         desk.session,
         draft=Draft(draft.duty, draft.title, texts),
-        weights=weights,
+        weights={name: weight for name, weight in weights.items() if name in DEFAULT_WEIGHTS},
         stale=desk.session.ranking is not None,
     )
 
@@ -43,7 +49,7 @@ def load_file(desk: "BetafloorApp", path: Path) -> None:
     try:
         use(desk, *read_file(path))
     except RequirementTextError as error:
-        desk.notify(str(error), title="Not loaded", severity="error", markup=False)
+        desk.tell(str(error), title="Not loaded", wrong=True)
 
 
 async def pick_requirement(desk: "BetafloorApp") -> None:
@@ -53,7 +59,7 @@ async def pick_requirement(desk: "BetafloorApp") -> None:
         saved = dict(desk.source.requirements())
     except SourceError as trouble:
         saved = {}
-        desk.notify(str(trouble), title="Saved requirements cannot be read", severity="error", markup=False)
+        desk.tell(str(trouble), title="Saved requirements cannot be read", wrong=True)
     choices = [
         *(Choice(f"{_EXAMPLE}{title}", title, "example, invented") for title in shipped),
         *(Choice(f"{_SAVED}{title}", title, "saved in the shelf") for title in saved),
@@ -93,7 +99,7 @@ async def save_requirement(desk: "BetafloorApp") -> None:
 
     requirement = desk.session.requirement
     if requirement is None or desk.session.problems:
-        desk.notify("Mend the form first; only a sound requirement is saved.", severity="warning", markup=False)
+        desk.tell("Mend the form first; only a sound requirement is saved.", wrong=True)
         return
     text = to_toml(requirement, desk.session.weights)
     await ask_and_write(
@@ -117,9 +123,9 @@ async def ask_and_write(
         try:
             write_whole(path, content(path))
         except OSError as error:
-            desk.notify(why(error), title="Not written", severity="error", markup=False)
+            desk.tell(why(error), title="Not written", wrong=True)
             return
-        desk.notify(f"Written: {path}", markup=False)
+        desk.tell(f"Written: {path}")
 
     await desk.push_screen(Ask(f"{question} ({', '.join(endings)})", name, doubt_file(endings)), take)
 

@@ -104,11 +104,9 @@ class ShortlistScreen(Room):
     def _ready(self) -> bool:
         session = self.session
         if not session.marks:
-            self.notify(NOTHING, title="Nothing to keep", severity="warning", markup=False)
+            self.desk.tell(NOTHING, title="Nothing to keep", wrong=True)
         elif session.ranking is None or session.stale:
-            self.notify(
-                "State a sound requirement first (F3): a shortlist is kept with it.", severity="warning", markup=False
-            )
+            self.desk.tell("State a sound requirement first (F3): a shortlist is kept with it.", wrong=True)
         return bool(session.marks) and session.ranking is not None and not session.stale
 
     def action_save_shortlist(self) -> None:
@@ -123,11 +121,9 @@ class ShortlistScreen(Room):
         try:
             says = self.desk.source.keep_shortlist(session.ranking, rows)
         except SourceError as trouble:
-            self.app.call_from_thread(
-                self.notify, str(trouble), title="Not saved", severity="error", markup=False
-            )  # fmt: skip
+            self.app.call_from_thread(self.desk.tell, str(trouble), title="Not saved", wrong=True)
             return
-        self.app.call_from_thread(self.notify, says, markup=False)
+        self.app.call_from_thread(self.desk.tell, says)
 
     async def action_export_shortlist(self) -> None:
         """Write the shortlist to a file."""

@@ -7,7 +7,7 @@ import math
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
-from .cells import fit
+from rich.cells import set_cell_size
 
 DASHES = ((1, 0), (5, 3), (1, 2), (7, 2), (2, 4))  # dots drawn, dots left out
 PLAIN_SIGNS = "*-.+="
@@ -74,7 +74,7 @@ def chart(
     rows = height - len(legend) - 3
     columns = width - _GUTTER
     if rows < 3 or columns < 12:
-        return [fit("(too small for a chart)" if i == 0 else "", width) for i in range(height)]
+        return [_cut("(too small for a chart)" if i == 0 else "", width) for i in range(height)]
     paper = _Paper(axes, columns, rows, plain)
     for number, one in enumerate(series):
         paper.curve(one, number)
@@ -84,7 +84,7 @@ def chart(
     for group in points:
         _put_points(cells, paper, group)
     lines = _framed(cells, paper, width)
-    return [*lines, *(fit(line, width) for line in legend)][:height]
+    return [*lines, *(_cut(line, width) for line in legend)][:height]
 
 
 class _Paper:
@@ -198,7 +198,7 @@ def _framed(cells: list[list[str]], paper: _Paper, width: int) -> list[str]:
         labels.setdefault(round(paper.y(value)), axis_number(value))
     axes = paper.axes
     title = f"{axes.y_title}{_in_unit(axes.y_unit)} over {axes.x_title}{_in_unit(axes.x_unit)}"
-    lines = [fit(_plain_text(title, plain=paper.plain), width)]
+    lines = [_cut(_plain_text(title, plain=paper.plain), width)]
     for row, line in enumerate(cells):
         label = labels.get(row, "")
         lines.append(f"{label:>{_GUTTER - 2}} {tick if label else upright}{''.join(line)}")
@@ -212,8 +212,12 @@ def _framed(cells: list[list[str]], paper: _Paper, width: int) -> list[str]:
             ruler[column] = cross
             below[start : start + len(text)] = list(text)
     lines.append(" " * (_GUTTER - 1) + corner + "".join(ruler))
-    lines.append(fit(" " * _GUTTER + "".join(below), width))
+    lines.append(_cut(" " * _GUTTER + "".join(below), width))
     return lines
+
+
+def _cut(line: str, width: int) -> str:
+    return set_cell_size(line, width)
 
 
 def _in_unit(unit: str) -> str:
