@@ -1,0 +1,1 @@
+"""The shelf file: SQLite, and nothing but."""
