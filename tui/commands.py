@@ -57,7 +57,8 @@ COMMANDS: tuple[Command, ...] = (
             "Go from the form to the ranking and back", typing=True),
     Command("load", ("bench",), ("f6",), "F6", "load", "Load a requirement: an example, a saved one or a file",
             typing=True),
-    Command("save-requirement", ("bench",), ("f7",), "F7", "save", "Save the requirement as a TOML file", typing=True),
+    Command("save-requirement", ("bench",), ("f7",), "F7", "save",
+            "Save the requirement in the shelf or as a TOML file", typing=True),
     Command("weights", ("bench",), ("f8",), "F8", "weights", "Weigh the criteria of the score", typing=True),
     Command("verdicts", ("bench",), ("v",), "v", "verdicts", "Show all parts, or only those that fit"),
     Command("stop", ("bench",), ("ctrl+x",), "^X", "stop", "Stop the ranking that is being worked out", typing=True),
@@ -77,7 +78,7 @@ COMMANDS: tuple[Command, ...] = (
             typing=True),
     # --- several screens
     Command("open", ("shelf", "bench", "shortlist", "picker"), ("enter",), "Enter", "open",
-            "Open what is under the cursor"),
+            "Open what is under the cursor; from the search field go to the list", typing=True),
     Command("mark", ("shelf", "bench", "shortlist", "part"), ("space",), "Space", "mark",
             "Mark the part for the shortlist, or take the mark off"),
     Command("calculation", ("bench", "part", "shortlist"), ("c",), "c", "sheet", "Open the calculation sheet"),

@@ -35,6 +35,6 @@ class Source(Protocol):
         """Save a requirement; gives back what was done, in words."""
         ...
 
-    def keep_shortlist(self, ranking: "Ranking", rows: Sequence[int]) -> str:
-        """Save some rows of a ranking as a shortlist; gives back what was done, in words."""
+    def keep_shortlist(self, ranking: "Ranking", rows: Sequence[int], weights: Mapping[str, float]) -> str:
+        """Save rows of a ranking, best first, as a shortlist; gives back what was done, in words."""
         ...

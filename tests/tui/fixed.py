@@ -49,10 +49,10 @@ def explanation_of(shelf: Shelf, row: int) -> Explanation:
     checks = (
         CheckExplanation("base drive", "Enough base current?", "fail", "derived", 4e-4, 6.5e-4, "A", 0.62, (),
                          "IB min 408 µA, must be at least IB needed 658 µA (×0.62)", (step,)),
-        CheckExplanation("collector–emitter voltage", "Below the rating?", "pass", "guaranteed", 28.0, 45.0, "V", 1.61, (),
-                         "VCE max 28 V, must be at most VCEO 45 V (×1.61)", ()),
-        CheckExplanation("junction temperature", "Cool enough?", "unknown", "missing", None, 150.0, "°C", None, ("RthJA",),
-                         "cannot say: no usable RthJA limit on file", ()),
+        CheckExplanation("collector–emitter voltage", "Below the rating?", "pass", "guaranteed", 28.0, 45.0, "V", 1.61,
+                         (),                         "VCE max 28 V, must be at most VCEO 45 V (×1.61)", ()),
+        CheckExplanation("junction temperature", "Cool enough?", "unknown", "missing", None, 150.0, "°C", None,
+                         ("RthJA",),                         "cannot say: no usable RthJA limit on file", ()),
     )  # fmt: skip
     return Explanation(
         part=str(shelf.names[row]),

@@ -133,7 +133,7 @@ class FakeSource:
         self.requirements_kept[title] = toml
         return f"Saved: {title}"
 
-    def keep_shortlist(self, ranking: Ranking, rows: Sequence[int]) -> str:
+    def keep_shortlist(self, ranking: Ranking, rows: Sequence[int], weights: Mapping[str, float]) -> str:
         self.shortlists.append([str(ranking.shelf.names[row]) for row in rows])
         return f"Saved: {len(rows)} parts"
 
@@ -166,6 +166,11 @@ class Pilot:
     @property
     def text(self) -> str:
         return screen_text(self.app)
+
+    @property
+    def told(self) -> str:
+        """What was told in passing."""
+        return "\n".join(f"{one.title}: {one.message}" for one in self.app._notifications)
 
     @property
     def session(self) -> Session:

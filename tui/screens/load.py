@@ -1,5 +1,6 @@
 """Loading and saving requirements: examples, saved ones, files."""
 
+import asyncio
 import re
 from collections.abc import Callable
 from dataclasses import replace
@@ -56,7 +57,7 @@ async def pick_requirement(desk: "BetafloorApp") -> None:
     """Let the user choose an example, a saved requirement or a file."""
     shipped = examples()
     try:
-        saved = dict(desk.source.requirements())
+        saved = dict(await asyncio.to_thread(desk.source.requirements))
     except SourceError as trouble:
         saved = {}
         desk.tell(str(trouble), title="Saved requirements cannot be read", wrong=True)
@@ -77,9 +78,16 @@ async def pick_requirement(desk: "BetafloorApp") -> None:
         elif answer.startswith(_EXAMPLE):
             use(desk, *read(shipped[answer.removeprefix(_EXAMPLE)]))
         else:
-            use(desk, *read(saved[answer.removeprefix(_SAVED)]))
+            _use_saved(desk, saved[answer.removeprefix(_SAVED)])
 
     await desk.push_screen(Picker("Load a requirement", choices), take)
+
+
+def _use_saved(desk: "BetafloorApp", toml: str) -> None:
+    try:
+        use(desk, *read(toml))
+    except RequirementTextError as error:
+        desk.tell(str(error), title="Not loaded", wrong=True)
 
 
 async def _ask_file(desk: "BetafloorApp") -> None:
@@ -94,17 +102,31 @@ async def _ask_file(desk: "BetafloorApp") -> None:
 
 
 async def save_requirement(desk: "BetafloorApp") -> None:
-    """Write the requirement as a TOML file whose name the user gives."""
+    """Save the requirement in the shelf, or as a TOML file whose name the user gives."""
     from importers.requirement_file import to_toml
 
     requirement = desk.session.requirement
-    if requirement is None or desk.session.problems:
-        desk.tell("Mend the form first; only a sound requirement is saved.", wrong=True)
+    if requirement is None or desk.session.problems or desk.session.stale:
+        desk.tell("Mend the form first; only a sound requirement is saved.", title="Not saved", wrong=True)
         return
-    text = to_toml(requirement, desk.session.weights)
-    await ask_and_write(
-        desk, "Save the requirement as", f"{file_stem(requirement.title)}.toml", (".toml",), lambda path: text.encode()
-    )
+    toml = to_toml(requirement, desk.session.weights)
+    title = requirement.title or "without a title"
+
+    async def take(answer: str | None) -> None:
+        if answer == _SAVED:
+            try:
+                desk.tell(await asyncio.to_thread(desk.source.keep_requirement, title, toml))
+            except SourceError as trouble:
+                desk.tell(str(trouble), title="Not saved", wrong=True)
+        elif answer == _FILE:
+            name = f"{file_stem(title)}.toml"
+            await ask_and_write(desk, "Save the requirement as", name, (".toml",), lambda path: toml.encode())
+
+    choices = [
+        Choice(_SAVED, "In the shelf", "comes back under F6"),
+        Choice(_FILE, "As a file …", "TOML, for betafloor rank"),
+    ]
+    await desk.push_screen(Picker(f"Save the requirement: {title}", choices), take)
 
 
 async def ask_and_write(

@@ -108,10 +108,6 @@ class ShelfScreen(Room):
     def take_search(self, message: Input.Changed) -> None:
         self._filter(search=message.value)
 
-    @on(Input.Submitted, "#search")
-    def leave_search(self) -> None:
-        self.set_focus(self.query_one("#parts"))
-
     def action_back(self) -> None:
         """From the search field to the list."""
         self.set_focus(self.query_one("#parts"))
@@ -154,7 +150,10 @@ class ShelfScreen(Room):
         self._filter(**{**_CLEAR, "sort": now.sort, "descending": now.descending})
 
     async def action_open(self) -> None:
-        """Open the part under the cursor."""
+        """Open the part under the cursor; from the search field go to the list."""
+        if isinstance(self.focused, Input):
+            self.action_back()
+            return
         row = self.query_one("#parts", LinesView).row
         if row is not None:
             await self.desk.open_part(row)

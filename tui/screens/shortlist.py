@@ -119,7 +119,7 @@ class ShortlistScreen(Room):
         if session.ranking is None:
             return
         try:
-            says = self.desk.source.keep_shortlist(session.ranking, rows)
+            says = self.desk.source.keep_shortlist(session.ranking, rows, session.weights)
         except SourceError as trouble:
             self.app.call_from_thread(self.desk.tell, str(trouble), title="Not saved", wrong=True)
             return

@@ -1,0 +1,73 @@
+"""Keys that are sent faster than the screen can follow, through a real terminal."""
+
+import os
+import shutil
+import subprocess
+import sys
+import time
+import uuid
+from collections.abc import Iterator
+from pathlib import Path
+
+import pytest
+
+ROOT = Path(__file__).parents[2]
+PROGRAM = "from tests.tui.support import FakeSource; from tui.app import BetafloorApp; BetafloorApp(FakeSource()).run()"
+
+pytestmark = pytest.mark.skipif(
+    shutil.which("tmux") is None or "CI" in os.environ, reason="needs tmux and a machine that is not too busy"
+)
+
+
+class Terminal:
+    """A tmux server of its own with one window."""
+
+    def __init__(self, size: tuple[int, int]) -> None:
+        self.name = f"betafloor-{uuid.uuid4().hex[:8]}"
+        self("-f", "/dev/null", "new-session", "-d", "-x", str(size[0]), "-y", str(size[1]), "-c", str(ROOT),
+             "sh", "-c", '"$0" -c "$1"; echo "left with $?"; exec cat', sys.executable, PROGRAM)  # fmt: skip
+
+    def __call__(self, *words: str) -> str:
+        done = subprocess.run(["tmux", "-L", self.name, *words], capture_output=True, text=True, check=True)
+        return done.stdout
+
+    def until(self, text: str, seconds: float = 20.0) -> str:
+        """The screen once `text` stands on it."""
+        deadline = time.monotonic() + seconds
+        while time.monotonic() < deadline:
+            screen = self("capture-pane", "-p")
+            if text in screen:
+                return screen
+        raise AssertionError(f"{text!r} is not on the screen:\n{screen}")
+
+
+@pytest.fixture
+def terminal() -> Iterator[Terminal]:
+    one = Terminal((80, 24))
+    yield one
+    subprocess.run(["tmux", "-L", one.name, "kill-server"], capture_output=True, check=False)
+
+
+def test_a_search_typed_ahead_loses_no_key(terminal: Terminal) -> None:
+    terminal.until("10 of 10")
+    for word, left in (("qx-13", "1 of 10"), ("qx-11", "6 of 10"), ("oops", "1 of 10")):
+        terminal("send-keys", "-l", f"/{word}")
+        assert f"Search {word}" in terminal.until(left)
+        terminal("send-keys", "Enter", "x")
+        terminal.until("10 of 10")
+
+
+def test_keys_sent_behind_the_one_that_opens_a_screen_reach_it(terminal: Terminal) -> None:
+    terminal.until("10 of 10")
+    terminal("send-keys", "Enter", "2")
+    terminal.until("[2 gain]")
+    terminal("send-keys", "Escape", "Down")
+    terminal.until("10 of 10")
+    terminal("send-keys", "F3", "V", "a", "l", "v", "e")
+    assert "Valve" in terminal.until("Supply, lowest")
+
+
+def test_the_program_leaves_the_terminal_as_it_was(terminal: Terminal) -> None:
+    terminal.until("10 of 10")
+    terminal("send-keys", "C-q")
+    assert "Betafloor" not in terminal.until("left with 0")

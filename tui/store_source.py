@@ -1,0 +1,85 @@
+"""The shelf file behind the interface; the store is imported in the thread that first asks it."""
+
+import json
+from collections.abc import Iterator, Mapping, Sequence
+from contextlib import contextmanager
+from dataclasses import asdict
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from .source import SourceError
+
+if TYPE_CHECKING:
+    from db.store import Store
+    from engine.part import Part
+    from engine.ranking import Ranking
+    from engine.shelf import Shelf
+
+
+class StoreSource:
+    """A shelf file, opened for each question."""
+
+    def __init__(self, path: Path) -> None:
+        self.path = path
+
+    @property
+    def name(self) -> str:
+        return self.path.name
+
+    @contextmanager
+    def _open(self) -> Iterator["Store"]:
+        from db.errors import StoreError
+        from db.store import Store
+
+        try:
+            with Store.open(self.path) as store:
+                yield store
+        except StoreError as error:
+            raise SourceError(str(error)) from error
+        except OSError as error:
+            raise SourceError(f"{self.path}: {error.strerror or error}; check the name and the rights") from error
+
+    def shelf(self) -> "Shelf":
+        with self._open() as store:
+            return store.shelf()
+
+    def part(self, type_number: str) -> "Part":
+        with self._open() as store:
+            return store.part(type_number).part
+
+    def requirements(self) -> Mapping[str, str]:
+        """Saved requirements, the newest of a title: title → TOML text."""
+        with self._open() as store:
+            return {one.title: one.toml for one in reversed(store.requirements())}
+
+    def keep_requirement(self, title: str, toml: str) -> str:
+        with self._open() as store:
+            store.save_requirement(title, toml)
+        return f"Saved in {self.path.name}: {title}"
+
+    def keep_shortlist(self, ranking: "Ranking", rows: Sequence[int], weights: Mapping[str, float]) -> str:
+        from db.shortlists import Entry
+        from engine.explain import explain
+        from importers.requirement_file import to_toml
+
+        entries = []
+        for rank, row in enumerate(rows, 1):
+            told = explain(ranking.requirement, ranking.shelf, row)
+            entries.append(Entry(rank, told.part, told.verdict, json.dumps(asdict(told), ensure_ascii=False)))
+        title = ranking.requirement.title or "without a title"
+        with self._open() as store:
+            requirement = store.save_requirement(title, to_toml(ranking.requirement, weights))
+            number = store.save_shortlist(
+                requirement, ranking.policy, program_name(), ranking.shelf.fingerprint, entries
+            )
+        return f"Saved as shortlist {number} in {self.path.name}: {len(entries)} parts"
+
+
+def program_name() -> str:
+    """The program with its version, as shortlists keep it."""
+    from importlib.metadata import PackageNotFoundError, version
+
+    try:
+        return f"betafloor {version('betafloor')}"
+    except PackageNotFoundError:
+        return "betafloor, run from its sources"
