@@ -289,12 +289,12 @@ def _cold_exponent(
 
 
 def _leakage(shelf: Shelf, ready: dict[str, Floats | Mask | Grades | Curve]) -> dict[str, Floats | Grades]:
-    """Collector leakage maximums. A Darlington's inner base floats: only what was measured whole counts."""
+    """Collector leakage maximums. A Darlington's inner base floats and multiplies: only the open-base limit counts."""
     leak = shelf.points["leakage"]
     v, typical = _limit_or_typical(leak["max"], leak["typ"])
     v = _worst_of_same(v, np.maximum, leak["v"], leak["temp"], leak["symbol"])
-    icbo_only = leak["symbol"] == SYMBOL_CODES["ICBO"]
-    used = ~np.isnan(v) & ~np.isnan(leak["v"]) & ~(icbo_only & np.asarray(ready["darlington"]))
+    open_base = leak["symbol"] == SYMBOL_CODES["ICEO"]
+    used = ~np.isnan(v) & ~np.isnan(leak["v"]) & (open_base | ~np.asarray(ready["darlington"]))
     return {
         "leak_t": np.where(used, leak["temp"], np.nan),
         "leak_v": np.where(used, leak["v"], np.nan),

@@ -288,7 +288,7 @@ def _times(
     test = _test_terms(p, "off")
     with np.errstate(all="ignore"):
         low_vbe = np.maximum(vbe_min.values - float(thermal_voltage(ROOM)) * np.log(10), 0.0)  # a decade less current
-        through_rb = np.where(sit.off_open, 0.0, (low_vbe - sit.off_level.values) / (net.rb.values * net.up.values))
+        through_rb = np.where(sit.off_open, 0.0, (low_vbe - sit.off_level.values) / (net.rb.values * net.up.values + net.r_drive.values))
         reverse = np.maximum(through_rb, 0.0) + low_vbe / (net.rbe.values * net.up.values) - sit.off_leak
         gain_at_test = either(p.gain.at(p.off_ic, p.slope_below), p.gain_low.at(p.off_ic, p.slope_below))
     ibr = Term("IBR min", reverse, "A", Evidence.DERIVED, "lowest reverse base current while turning off")
@@ -314,14 +314,16 @@ def _test_terms(p: Prepared, edge: str) -> dict[str, Term]:
 
 def _off_current(sit: Situation, p: Prepared, net: _Network, hot: Floats) -> Term:
     tj = Term("TJ hot", hot, "°C", Evidence.DERIVED, "hottest junction, just turned off", looked_up=("RthJA", "TJ"))
-    symbols = ("ICBO",) if not p.darlington.all() else ("ICEX",)
+    symbols = ("ICBO",) if not p.darlington.all() else ("ICEO",)
     with np.errstate(all="ignore"):
         values = leakage.leakage_most(float(sit.vs_max.values), hot, p.leak_v, p.leak_t, p.leak_i, p.vceo)
     leak = leakage.leakage_hot.traced(values, p.leak_grade, symbols, V=sit.vs_max, TJ=tj)
     into_base = Term("I base", leak.values + sit.off_leak, "A", leak.evidence, "leakage into the base node",
                      inputs={"leak": leak, "driver": given("driver leakage", sit.off_leak, "A")})  # fmt: skip
     rb = net.rb if not sit.off_open else given("RB", np.inf, "Ω", "the driver lets go")
-    vb = drive.base_voltage_off(V_low=sit.off_level, RB=rb, RBE=net.rbe, I_base=into_base, up=net.up, down=net.down)
+    vb = drive.base_voltage_off(
+        V_low=sit.off_level, RB=rb, RBE=net.rbe, R_drive=net.r_drive, I_base=into_base, up=net.up, down=net.down
+    )
     floor_i = Term("I floor", p.floor_i, "A", Evidence.DERIVED, "current of the junction floor", looked_up=("IC",))
     floor_v = leakage.floor_hot(
         V_floor=Term("V floor", p.floor_v, "V", Evidence.DERIVED, "junction floor at 25 °C", "VBE minimum on file or common practice"),

@@ -21,6 +21,8 @@ Floats = NDArray[np.float64]
 
 PLAIN_VCEO = 100.0  # V: up to here a small type is plain
 PLAIN_DROP = 0.35  # V: a collector drop up to which quasi-saturation is not to be reckoned with
+LEAST_RB = 1.0  # Ω: where the driver's own resistance limits the current, something still stands in the base lead
+LEAST_RBE = 10.0  # Ω: below it no network is meant
 PLACES = tuple(np.linspace(1.0, 0.0, 9))  # where in the window RB is tried, from the largest
 
 
@@ -156,7 +158,7 @@ def switch_witnesses(p: Prepared, ic: float, cold: Floats) -> saturation.Witness
     gain = either(low, np.where(plain, p.gain_plain.at(ic, p.slope_below), p.gain_quasi.at(ic, p.slope_below)) * cold)
     stretch = plain & ~p.darlington
     return saturation.witnesses(
-        ic, p.sat_ic, p.sat_ib, p.sat_v, cold, p.slope_below, gain, low, p.gain_low.vce, stretch
+        ic, p.sat_ic, p.sat_ib, p.sat_v, cold, p.slope_below, gain, low, p.gain_low.vce, stretch, ~p.darlington
     )
 
 
@@ -229,6 +231,7 @@ def window(sit: Situation, p: Prepared, n: Needs, rbe: Floats) -> tuple[Floats, 
     base_share = n.ib_limit + n.vbe_min / (rbe * (1 + tol))
     by_base = drive.rb_smallest(np.asarray(strongest), n.vbe_min, base_share, r_drive, tol)
     low = np.where(np.isnan(by_base), by_driver, np.maximum(by_driver, by_base))
+    low = np.maximum(low, LEAST_RB)
     high = np.full(len(p), np.inf)
     for need in n.drives:
         high = np.minimum(high, drive.rb_largest(need.drive, need.vbe, need.ib, rbe, r_drive, tol))
@@ -245,7 +248,7 @@ def design(sit: Situation, p: Prepared, n: Needs) -> Network:
     if sit.off_open:
         quiet = np.full(len(p), -np.inf)  # nothing but RBE holds the base
     else:
-        quiet = (n.v_base_allowed - off_level) / n.leak / (1 + tol)
+        quiet = ((n.v_base_allowed - off_level) / n.leak - sit.number("drive.resistance")) / (1 + tol)
     usable = np.minimum(high, np.where(np.isnan(quiet), high, quiet))
     fits = preferred.at_least(low, series) <= usable
     plain = Network(_inside(low, np.where(fits, usable, high), series), none, low, high)
@@ -258,7 +261,7 @@ def _turned_off_at_least(sit: Situation, p: Prepared, n: Needs, plain: Network) 
     """Where the drive cannot pay for an RBE: one that turns the part off, so that only the drive is found wanting."""
     series = sit.requirement.word("resistors.series")
     _, most = rbe_interval(sit, n, plain.rb)
-    rbe = np.where(np.isfinite(most) & (most > 0), preferred.at_most(most, series), np.inf)
+    rbe = np.where(np.isfinite(most) & (most >= LEAST_RBE), preferred.at_most(most, series), np.inf)
     low, high = window(sit, p, n, rbe)
     serves = preferred.at_most(high, series)
     return Network(np.where(np.isfinite(serves) & (serves > 0), serves, plain.rb), rbe, low, high)
@@ -316,7 +319,7 @@ def rbe_interval(sit: Situation, n: Needs, rb: Floats) -> tuple[Floats, Floats]:
     if sit.off_open:
         most = drive.rbe_largest_open(n.v_base_allowed, n.leak + sit.off_leak, tol)
     else:
-        most = drive.rbe_largest(n.v_base_allowed, float(sit.off_level.values), n.leak, rb, tol)
+        most = drive.rbe_largest(n.v_base_allowed, float(sit.off_level.values), n.leak, rb, r_drive, tol)
     return least, most
 
 

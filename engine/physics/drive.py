@@ -66,15 +66,15 @@ def rbe_smallest(v_drive: Floats, vbe: Floats, ib: Floats, rb: Floats, r_drive: 
     return np.where(spare > 0, vbe / np.where(spare > 0, spare, 1.0) / (1 - tol), np.inf)
 
 
-def rbe_largest(v_allowed: Floats, v_low: float, leak: Floats, rb: Floats, tol: float) -> Floats:
+def rbe_largest(v_allowed: Floats, v_low: float, leak: Floats, rb: Floats, r_drive: float, tol: float) -> Floats:
     """Largest nominal RBE that holds the base at `v_allowed` or less when off; infinite: none needed. [Ω]
 
     `v_low` is the driver's low level behind RB, `leak` the current into the base node. The divider is
     taken with the smallest RB, the leakage drop with the largest: each term at its worst.
     """
-    rb_low, rb_high = rb * (1 - tol), rb * (1 + tol)
-    # RBE·(v_low/rb_low + leak·rb_high/rb_low − v_allowed/rb_low) ≤ v_allowed, kept below the exact worst case
-    excess = (v_low + leak * rb_high - v_allowed) / rb_low
+    least, most = rb * (1 - tol) + r_drive, rb * (1 + tol) + r_drive
+    # RBE·(v_low/least + leak·most/least − v_allowed/least) ≤ v_allowed, kept below the exact worst case
+    excess = (v_low + leak * most - v_allowed) / least
     return np.where(excess <= 0, np.inf, v_allowed / np.where(excess > 0, excess, 1.0) / (1 + tol))
 
 
@@ -84,15 +84,17 @@ def rbe_largest_open(v_allowed: Floats, leak: Floats, tol: float) -> Floats:
 
 
 @formula("VB off", "V", "base–emitter voltage when off, at the hottest",
-         text="V_low * RBE * up / (RB * down + RBE * up) + I_base / (1 / (RB * up) + 1 / (RBE * up))",
+         text="V_low / ((RB * down + R_drive) / (RBE * up) + 1) + I_base / (1 / (RB * up + R_drive) + 1 / (RBE * up))",
          source="circuit law", exact=True)  # fmt: skip
-def base_voltage_off(V_low: Floats, RB: Floats, RBE: Floats, I_base: Floats, up: Floats, down: Floats) -> Floats:
+def base_voltage_off(
+    V_low: Floats, RB: Floats, RBE: Floats, R_drive: Floats, I_base: Floats, up: Floats, down: Floats
+) -> Floats:
     """Divider of the low level and drop of the leakage, each at its worst. RB infinite: the driver lets go. [V]
 
     up, down  1 + and 1 − the resistors' tolerance.
 
-    >>> round(float(base_voltage_off.raw(0.4, 1e3, 1e3, 10e-6, 1.0, 1.0)), 3)
+    >>> round(float(base_voltage_off.raw(0.4, 1e3, 1e3, 0.0, 10e-6, 1.0, 1.0)), 3)
     0.205
     """
-    divider = V_low / (RB * down / (RBE * up) + 1)
-    return divider + I_base / (1 / (RB * up) + 1 / (RBE * up))
+    divider = V_low / ((RB * down + R_drive) / (RBE * up) + 1)
+    return divider + I_base / (1 / (RB * up + R_drive) + 1 / (RBE * up))

@@ -16,7 +16,7 @@ from .constants import ROOM, thermal_voltage
 Floats = NDArray[np.float64]
 Mask = NDArray[np.bool_]
 
-HOT_RATE = 0.006  # 1/K, source "saturation hot"
+HOT_RATE = 0.007  # 1/K, source "saturation hot"
 LEAST_REVERSE_BETA = 0.1  # of a transistor in use: bounds the intrinsic part of VCE(sat) (common practice)
 GUARD = 0.6  # share of the gain floor that a saturation limit covers without an allowance
 STRETCHED = 0.85  # share up to which a plain type is followed by Ebers–Moll
@@ -47,16 +47,18 @@ def witnesses(
     gain_low: Floats,
     v_gain: Floats,
     stretch: Mask,
+    simple: Mask,
 ) -> Witnesses:
     """What the tests (k, n), in rising IC, say at collector current `ic`.
 
-    `cold` (n,) is the factor from 25 °C to the coldest gain, `slope_below` how the gain falls with IC.
+    `simple` (n,) is False for a Darlington, whose on-voltage does not shrink with the current: its output
+    cannot go below one VBE. `cold` (n,) is the factor from 25 °C to the coldest gain, `slope_below` how the gain falls with IC.
     """
     v, ohmic, beta, beta_cold = [], [], [], []
     for i, (ic_t, ib_t, v_t) in enumerate(zip(sat_ic, sat_ib, sat_v, strict=True)):
         ratio = np.where(ic <= ic_t * (1 + 1e-9), ic / ic_t, np.nan)
         v.append(np.where(np.isnan(ratio), np.nan, v_t))
-        ohmic.append(v_t * ratio)
+        ohmic.append(np.where(simple, v_t * ratio, np.nan))
         beta.append(np.where(np.isnan(ratio), np.nan, ic_t / ib_t))
         beta_cold.append(beta[-1] * cold * np.minimum(ratio, 1.0) ** slope_below)
         if i == 0:
@@ -170,12 +172,12 @@ def beta_at_room(**_: Floats) -> Floats:
 
 
 @formula("hot factor", "", "growth of the on-voltage from 25 °C to the hottest junction",
-         text="1 + 0.006 * max(TJ - 25, 0)", source="saturation hot")  # fmt: skip
+         text="1 + 0.007 * max(TJ - 25, 0)", source="saturation hot")  # fmt: skip
 def hot_factor(TJ: Floats) -> Floats:
     """Factor on VCE(sat) at `TJ` °C.
 
     >>> round(float(hot_factor.raw(125.0)), 2)
-    1.6
+    1.7
     """
     return 1 + HOT_RATE * np.maximum(TJ - ROOM, 0)
 

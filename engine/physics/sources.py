@@ -13,7 +13,7 @@ SOURCES: dict[str, str] = {
     "gives the exponent 2.44; 2.5 is taken",
     "gain chord": "log hFE over log IC is concave in the integral charge-control model, so a chord lies below it "
     "(Gummel, Poon 1970); below the lowest point recombination leaves a slope of at most 1/2",
-    "saturation hot": "Common practice: +0.6 %/K for the ohmic and the intrinsic part together",
+    "saturation hot": "Common practice, tightened: +0.7 %/K for the ohmic and the intrinsic part together",
     "vbe cold": "Common practice: −2.5 mV/K a junction where the larger magnitude is worse; "
     "dVBE/dT = (VBE − EG − XTI·VT)/T is −1.6 to −2.2 mV/K for 0.70 to 0.55 V",
     "vbe floor": "Common practice: no silicon junction conducts a tenth of its rated collector current below 0.60 V "

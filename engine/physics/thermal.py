@@ -43,7 +43,7 @@ def mean_loss(share: Floats, P_on: Floats, P_edges: Floats) -> Floats:
 
 
 @formula("TJ max", "°C", "highest junction temperature",
-         words="the fixed point of TJ = TA + Rth·P(TJ), where the on-voltage grows by 0.6 %/K; no value when each kelvin "
+         words="the fixed point of TJ = TA + Rth·P(TJ), where the on-voltage grows by 0.7 %/K; no value when each kelvin "
                "heats by more than a kelvin (runaway)",
          source="jesd51")  # fmt: skip
 def junction_temperature(
