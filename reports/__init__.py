@@ -1,0 +1,1 @@
+"""Results as text: rankings, calculation sheets, shortlists. The caller writes the file."""

@@ -1,0 +1,84 @@
+"""A ranking as a table: for a terminal, as CSV and as Markdown."""
+
+from collections.abc import Callable, Sequence
+
+import numpy as np
+
+from engine import show
+from engine.ranking import Ranking, Verdict
+
+from .text import markdown_row, neutral
+
+Cell = Callable[[Ranking, int], float | str]
+
+COLUMNS: tuple[tuple[str, str, Cell], ...] = (
+    ("part", "", lambda r, i: str(r.shelf.names[i])),
+    ("verdict", "", lambda r, i: Verdict(int(r.verdict[i])).words),
+    ("deciding check", "", lambda r, i: r.checks[int(r.worst[i])].name),
+    ("headroom", "", lambda r, i: float(r.headroom[i])),
+    ("RB", "Ω", lambda r, i: float(r.network["rb"][i])),
+    ("RB from", "Ω", lambda r, i: float(r.network["rb_low"][i])),
+    ("RB to", "Ω", lambda r, i: float(r.network["rb_high"][i])),
+    ("RBE", "Ω", lambda r, i: float(r.network["rbe"][i])),
+    ("VCE on", "V", lambda r, i: float(r.bounds["vce_on_max"][i])),
+    ("TJ", "°C", lambda r, i: float(r.bounds["tj_max"][i])),
+    ("package", "", lambda r, i: str(r.shelf.package[i])),
+    ("free", "", lambda r, i: float(r.shelf.stock[i] - r.shelf.reserved[i])),
+    ("score", "", lambda r, i: float(r.score[i])),
+)
+"""Heading, unit and value of each column."""
+
+
+def places(ranking: Ranking) -> dict[int, int]:
+    """Row of the shelf → place in the ranking, from 1."""
+    return {int(row): i + 1 for i, row in enumerate(ranking.order)}
+
+
+def text_table(ranking: Ranking, rows: Sequence[int]) -> str:
+    """Aligned columns for a terminal."""
+    place = places(ranking)
+    lines = [["#", *(heading for heading, _, _ in COLUMNS)]]
+    lines += [[str(place[row]), *(_shown(ranking, row, column) for column in COLUMNS)] for row in rows]
+    widths = [max(len(line[i]) for line in lines) for i in range(len(lines[0]))]
+    padded = ("  ".join(cell.ljust(width) for cell, width in zip(line, widths, strict=True)).rstrip() for line in lines)
+    return "\n".join(padded) + "\n"
+
+
+def markdown_table(ranking: Ranking, rows: Sequence[int]) -> str:
+    """The same as a Markdown table under its title."""
+    place = places(ranking)
+    lines = [f"# {ranking.requirement.title or 'Ranking'}", "", markdown_row(["#", *(h for h, _, _ in COLUMNS)])]
+    lines.append(markdown_row(["---"] * (len(COLUMNS) + 1)))
+    lines += [markdown_row([str(place[row]), *(_shown(ranking, row, column) for column in COLUMNS)]) for row in rows]
+    return "\n".join(lines) + "\n"
+
+
+def csv_table(ranking: Ranking, rows: Sequence[int]) -> str:
+    """SI numbers for a spreadsheet; text that it would run as a formula is neutralised."""
+    import pandas as pd
+
+    place = places(ranking)
+    data: dict[str, list[object]] = {"rank": [place[row] for row in rows]}
+    for heading, unit, value in COLUMNS:
+        data[f"{heading} [{unit}]" if unit else heading] = [_plain(value(ranking, row)) for row in rows]
+    return pd.DataFrame(data).to_csv(index=False, lineterminator="\n")
+
+
+def _shown(ranking: Ranking, row: int, column: tuple[str, str, Cell]) -> str:
+    heading, unit, value = column
+    cell = value(ranking, row)
+    if isinstance(cell, str):
+        return cell
+    if np.isnan(cell):
+        return "–"
+    if heading == "headroom":
+        return show.headroom(cell)
+    if heading == "free":
+        return f"{cell:.0f}"
+    return show.quantity(cell, unit, 3)
+
+
+def _plain(cell: float | str) -> float | str | None:
+    if isinstance(cell, str):
+        return neutral(cell)
+    return None if not np.isfinite(cell) else cell
