@@ -37,7 +37,10 @@ def write(path: Path, conn: sqlite3.Connection, target: Path) -> None:
 def problems(conn: sqlite3.Connection) -> list[str]:
     """What is wrong with the file, one line each."""
     found = [f"damage: {says}" for (says,) in conn.execute("PRAGMA integrity_check") if says != "ok"]
-    found += [f"{row[0]}, row {row[1]}: points to a row of {row[2]} that is gone" for row in conn.execute("PRAGMA foreign_key_check")]
+    found += [
+        f"{row[0]}, row {row[1]}: points to a row of {row[2]} that is gone"
+        for row in conn.execute("PRAGMA foreign_key_check")
+    ]
     kept = columns.load(conn)
     if kept is not None:
         fresh = columns.build(conn)

@@ -148,7 +148,9 @@ class _Run:
             stock.receive(self.conn, number, entry)
             return True
         if on_hand != arrival.stock:
-            says = f"{name}: the ledger says {on_hand} on hand, the row {arrival.stock}; enter a count if the row is right"
+            says = (
+                f"{name}: the ledger says {on_hand} on hand, the row {arrival.stock}; enter a count if the row is right"
+            )
             self.notices.append((arrival.row, says))
         return False
 

@@ -17,7 +17,7 @@ COLUMNS = (
 )  # fmt: skip
 INSERT_LIMIT = f'INSERT INTO "limit" ({", ".join(COLUMNS)}) VALUES ({", ".join("?" * len(COLUMNS))})'
 _READ = (
-    f'SELECT l.part, l.id, l.symbol, l.bound_min, l.typ, l.bound_max, {", ".join(f"l.{c}" for c in CONDITIONS)}, '
+    f"SELECT l.part, l.id, l.symbol, l.bound_min, l.typ, l.bound_max, {', '.join(f'l.{c}' for c in CONDITIONS)}, "
     'l.pulsed, s.document, l.note, l.flag, l.entered_at FROM "limit" l JOIN source s ON s.id = l.source'
 )
 
@@ -87,7 +87,9 @@ def limit_of(row: tuple[object, ...]) -> Limit:
     """A row of the reading query as a record."""
     n = len(CONDITIONS)
     values = row[6 : 6 + n]
-    conditions = tuple(sorted((name, value) for name, value in zip(CONDITIONS, values, strict=True) if value is not None))
+    conditions = tuple(
+        sorted((name, value) for name, value in zip(CONDITIONS, values, strict=True) if value is not None)
+    )
     pulsed, source, note, flag = row[6 + n : 10 + n]
     return Limit(row[2], row[3], row[4], row[5], conditions, bool(pulsed), source, note, flag)  # type: ignore[arg-type]
 

@@ -79,5 +79,7 @@ def all_of(conn: sqlite3.Connection) -> list[Shortlist]:
 
 
 def _entries(conn: sqlite3.Connection, shortlist: int) -> tuple[Entry, ...]:
-    rows = conn.execute("SELECT rank, part, verdict, snapshot FROM entry WHERE shortlist = ? ORDER BY rank", (shortlist,))
+    rows = conn.execute(
+        "SELECT rank, part, verdict, snapshot FROM entry WHERE shortlist = ? ORDER BY rank", (shortlist,)
+    )
     return tuple(Entry(*row) for row in rows)

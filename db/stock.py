@@ -133,7 +133,9 @@ def _from_lots(conn: sqlite3.Connection, part: int, entry: Movement) -> None:
     room = {lot: (held if entry.kind == "release" else quantity - held) for lot, _, quantity, held in lots}
     if sum(room.values()) < entry.quantity:
         what = "reserved" if entry.kind == "release" else "free"
-        raise StoreError(f"{entry.type_number}: {entry.quantity} asked, {sum(room.values())} {what}; state no more than that")
+        raise StoreError(
+            f"{entry.type_number}: {entry.quantity} asked, {sum(room.values())} {what}; state no more than that"
+        )
     left = entry.quantity
     for lot, available in room.items():
         share = min(left, max(available, 0))

@@ -66,7 +66,9 @@ class Store:
     def __enter__(self) -> "Store":
         return self
 
-    def __exit__(self, kind: type[BaseException] | None, error: BaseException | None, trace: TracebackType | None) -> None:
+    def __exit__(
+        self, kind: type[BaseException] | None, error: BaseException | None, trace: TracebackType | None
+    ) -> None:
         self.close()
 
     @contextmanager
@@ -236,7 +238,9 @@ def _inspect(path: Path) -> None:
         if owner != APPLICATION_ID and (owner or tables):
             raise NotAShelf(f"{path} is another program's database (application id {owner:#x}); name another file")
         if version > VERSION:
-            raise NewerShelf(f"{path} was written by a newer version (schema {version}, this one knows {VERSION}); update")
+            raise NewerShelf(
+                f"{path} was written by a newer version (schema {version}, this one knows {VERSION}); update"
+            )
         (verdict,) = probe.execute("PRAGMA quick_check(1)").fetchone()
         if verdict != "ok":
             raise NotAShelf(f"{path} is damaged ({verdict}); restore a backup; the file was left as it is")

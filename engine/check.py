@@ -53,7 +53,9 @@ class Outcome:
     def column(self) -> CheckColumn:
         """The outcome without its terms."""
         n = len(self.headroom)
-        value, limit = (np.broadcast_to(t.values, n).astype(np.float64) for t in (self.compared.demand, self.compared.limit))
+        value, limit = (
+            np.broadcast_to(t.values, n).astype(np.float64) for t in (self.compared.demand, self.compared.limit)
+        )
         unit = self.compared.demand.unit
         return CheckColumn(
             self.check.name, self.check.question, unit, value, limit, self.headroom, self.status, self.evidence

@@ -50,7 +50,9 @@ def overall(wanted: Mapping[str, Floats], weights: Mapping[str, float]) -> Float
     if total <= 0:
         return np.ones(len(next(iter(wanted.values()))))
     with np.errstate(all="ignore"):
-        logs = sum(weights.get(name, 0.0) / total * np.log(d) for name, d in wanted.items() if weights.get(name, 0.0) > 0)
+        logs = sum(
+            weights.get(name, 0.0) / total * np.log(d) for name, d in wanted.items() if weights.get(name, 0.0) > 0
+        )
         return np.exp(np.asarray(logs))
 
 

@@ -94,9 +94,7 @@ def _sentence(
         return f"{demand.symbol}: {'yes' if value else 'no'}"
     relation = "at least" if outcome.compared.at_least else "at most"
     tail = "" if math.isinf(headroom) else f" ({show.headroom(headroom)})"
-    return (
-        f"{demand.symbol} {show.quantity(value, unit)}, must be {relation} {allowed.symbol} {show.quantity(limit, unit)}{tail}"
-    )
+    return f"{demand.symbol} {show.quantity(value, unit)}, must be {relation} {allowed.symbol} {show.quantity(limit, unit)}{tail}"
 
 
 def missing_symbols(*terms: Term) -> tuple[str, ...]:

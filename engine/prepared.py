@@ -262,9 +262,7 @@ def _share_kept(ic: Floats, gain: Floats, low: Mask, curve: Curve, slope: Floats
     return least
 
 
-def _with_tests(
-    ic: Floats, gain: Floats, vce: Floats, used: Mask, typical: Floats, tests: tuple[Floats, ...]
-) -> Curve:
+def _with_tests(ic: Floats, gain: Floats, vce: Floats, used: Mask, typical: Floats, tests: tuple[Floats, ...]) -> Curve:
     """A gain floor carried on above its highest point by the saturation tests, whose IC ÷ IB every device has."""
     sat_ic, sat_ib, sat_v, sat_grade = tests
     top = np.max(np.where(used, ic, -np.inf), axis=0)

@@ -52,9 +52,7 @@ def read_bytes(data: bytes, name: str, *, polarity: str = "") -> Reading:
     return _read(parse_table(data, name), polarity, lambda done, total: None, lambda: False)
 
 
-def _read(
-    table: Table, polarity: str, progress: Callable[[int, int], None], cancelled: Callable[[], bool]
-) -> Reading:
+def _read(table: Table, polarity: str, progress: Callable[[int, int], None], cancelled: Callable[[], bool]) -> Reading:
     form, found = _recognised(table, polarity)
     landed: list[Arrival] = []
     problems = list(_unknown_columns(table, form))
@@ -89,7 +87,9 @@ def _recognised(table: Table, polarity: str):  # type: ignore[no-untyped-def]
 def _unknown_columns(table: Table, form: str) -> list[RowProblem]:
     """Each heading that means nothing here, reported once."""
     if form == "long":
-        known = set(plain_columns(table.header).values()) | {place for place, _ in condition_columns(table.header).values()}
+        known = set(plain_columns(table.header).values()) | {
+            place for place, _ in condition_columns(table.header).values()
+        }
         names = [heading for place, heading in enumerate(table.header) if heading and place not in known]
     else:
         names = wide_form.unknown_columns(table.header)

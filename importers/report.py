@@ -16,6 +16,7 @@ class Landed:
     unchanged: int
     set_aside: int
     refused: tuple[tuple[int, str], ...] = ()  # rows that contradict the shelf: row, says
+    notices: tuple[tuple[int, str], ...] = ()  # rows that landed, with something to know
 
     @property
     def rejected(self) -> int:
@@ -29,10 +30,13 @@ def json_report(landed: Sequence[Landed], parts: int) -> dict[str, Any]:
 
 def _file(one: Landed) -> dict[str, Any]:
     problems = [
-        {"row": p.row, "column": p.column, "value": p.value, "kind": p.kind, "says": p.says} for p in one.reading.problems
+        {"row": p.row, "column": p.column, "value": p.value, "kind": p.kind, "says": p.says}
+        for p in one.reading.problems
     ]
     problems += [
-        {"row": row, "column": "", "value": "", "kind": "contradiction", "says": says} for row, says in one.refused
+        {"row": row, "column": "", "value": "", "kind": kind, "says": says}
+        for kind, rows in (("contradiction", one.refused), ("ledger", one.notices))
+        for row, says in rows
     ]
     return {
         "file": one.reading.file,
@@ -55,9 +59,11 @@ def text_report(landed: Sequence[Landed], parts: int, *, dry_run: bool = False) 
             f"{one.unchanged} unchanged, {one.set_aside} set aside, {one.rejected} rejected"
         )
         lines += [
-            f"  row {p.row}, {p.column}{f' {p.value!r}' if p.value else ''}: {p.says} [{p.kind}]" for p in one.reading.problems
+            f"  row {p.row}, {p.column}{f' {p.value!r}' if p.value else ''}: {p.says} [{p.kind}]"
+            for p in one.reading.problems
         ]
         lines += [f"  row {row}: {says} [contradiction]" for row, says in one.refused]
+        lines += [f"  row {row}: {says} [ledger]" for row, says in one.notices]
     end = "nothing was written (dry run); the shelf would hold" if dry_run else "the shelf holds"
     lines.append(f"{end} {parts} parts")
     return "\n".join(lines) + "\n"

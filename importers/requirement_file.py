@@ -55,7 +55,9 @@ def parse_fields(duty: str, texts: Mapping[str, str], *, title: str = "") -> Req
 def to_toml(requirement: Requirement, weights: Mapping[str, float] | None = None) -> str:
     """A requirement file that reads back as the same requirement."""
     known = duties()[requirement.duty]
-    tables: dict[str, list[str]] = {"": [f"title = {_quoted(requirement.title)}", f"duty = {_quoted(requirement.duty)}"]}
+    tables: dict[str, list[str]] = {
+        "": [f"title = {_quoted(requirement.title)}", f"duty = {_quoted(requirement.duty)}"]
+    }
     for one in known.fields:
         value = requirement.values.get(one.key)
         if value is None or value == () or value == one.default:
@@ -110,7 +112,9 @@ def _value(one: Field, raw: Any) -> Value:
 
 def _weights(table: Any) -> tuple[dict[str, float], list[Problem]]:
     if not isinstance(table, dict):
-        return {}, [Problem("weights", str(table), "a table is wanted", "Write [weights] and a line for each criterion")]
+        return {}, [
+            Problem("weights", str(table), "a table is wanted", "Write [weights] and a line for each criterion")
+        ]
     weights, problems = {}, []
     for name, value in table.items():
         if name not in DEFAULT_WEIGHTS:

@@ -11,7 +11,13 @@ def read_structure(text: str, column: str) -> str:
     word = text.strip().casefold().replace("_", " ").replace("-", " ")
     if not word:
         return ""
-    polarity = "npn" if word.startswith(("npn", "n ")) or word == "n" else "pnp" if word.startswith(("pnp", "p ")) or word == "p" else ""
+    polarity = (
+        "npn"
+        if word.startswith(("npn", "n ")) or word == "n"
+        else "pnp"
+        if word.startswith(("pnp", "p ")) or word == "p"
+        else ""
+    )
     if not polarity:
         polarity = "npn" if " npn" in f" {word}" else "pnp" if " pnp" in f" {word}" else ""
     if not polarity:

@@ -53,7 +53,9 @@ def _read_cell(symbol: Symbol, column: str, text: str, unit_text: str) -> list[t
         return [(side, _number(symbol, column, bound["value"], unit_text))]
     span = _RANGE.match(text)
     if span is not None:
-        ends = ((side, _number(symbol, column, span[end], unit_text)) for side, end in (("min", "low"), ("max", "high")))
+        ends = (
+            (side, _number(symbol, column, span[end], unit_text)) for side, end in (("min", "low"), ("max", "high"))
+        )
         return list(ends)
     return [(column, _number(symbol, column, text, unit_text))]
 
@@ -92,10 +94,14 @@ def _refuse(symbol: Symbol, found: dict[str, float | None], cells: dict[str, str
     stated = {bound: value for bound, value in found.items() if value is not None}
     if not stated:
         column = next((name for name in ("max", "min", "typ") if name in cells), "max")
-        raise CellError(column, "", "no-value", f"{symbol.name}: no value in min, typ or max; write one or leave the row out")
+        raise CellError(
+            column, "", "no-value", f"{symbol.name}: no value in min, typ or max; write one or leave the row out"
+        )
     for bound, value in stated.items():
         if value <= 0 and symbol.name not in ("TJ", "NF"):
-            raise CellError(bound, cells.get(bound, ""), "impossible", f"{symbol.name} cannot be {value:g}; write its size")
+            raise CellError(
+                bound, cells.get(bound, ""), "impossible", f"{symbol.name} cannot be {value:g}; write its size"
+            )
     low, high = found["min"], found["max"]
     if low is not None and high is not None and low > high:
         says = f"{symbol.name}: the minimum {low:g} lies above the maximum {high:g}; exchange them or check the unit"

@@ -61,13 +61,17 @@ def blocks(sheet: Sheet) -> Iterator[Block]:
     told, req = sheet.told, sheet.requirement
     yield Heading(1, f"{told.part}: {req.title or req.duty}")
     yield Paragraph(f"{told.verdict.capitalize()} (evidence: {told.evidence}). {told.says}.")
-    yield Paragraph(f"{told.structure or 'structure not stated'}, {told.package or 'package not stated'}. {told.network_says}.")
+    yield Paragraph(
+        f"{told.structure or 'structure not stated'}, {told.package or 'package not stated'}. {told.network_says}."
+    )
     yield Heading(2, "Requirement")
     yield Grid(("what", "value"), tuple(_requirement(req)))
     if req.notes or told.notes:
         yield Bullets(tuple(dict.fromkeys((*req.notes, *told.notes))))
     yield Heading(2, "Checks")
-    yield Grid(("check", "status", "value", "limit", "headroom", "evidence"), tuple(_summary(one) for one in told.checks))
+    yield Grid(
+        ("check", "status", "value", "limit", "headroom", "evidence"), tuple(_summary(one) for one in told.checks)
+    )
     yield Heading(2, "Bounds at the worst")
     yield Grid(("bound", "value"), tuple((name, show.quantity(v, _UNITS[name])) for name, v in told.bounds.items()))
     yield Heading(2, "Working")
@@ -92,7 +96,11 @@ def sheet_object(sheet: Sheet) -> dict[str, Any]:
         "program": program(),
         "date": sheet.date,
         "shelf": {"fingerprint": sheet.fingerprint},
-        "requirement": {"title": req.title, "duty": req.duty, **{k: list(v) if isinstance(v, tuple) else v for k, v in req.values.items()}},
+        "requirement": {
+            "title": req.title,
+            "duty": req.duty,
+            **{k: list(v) if isinstance(v, tuple) else v for k, v in req.values.items()},
+        },
         "part": told.part,
         "structure": told.structure,
         "package": told.package,
@@ -102,7 +110,8 @@ def sheet_object(sheet: Sheet) -> dict[str, Any]:
         "network_says": told.network_says,
         **explanation_object(told),
         "steps": {
-            one.name: [{name: getattr(step, name) for name in Step.__slots__} for step in one.steps] for one in told.checks
+            one.name: [{name: getattr(step, name) for name in Step.__slots__} for step in one.steps]
+            for one in told.checks
         },
         "cautions": list(told.cautions),
         "notes": list(told.notes),
@@ -122,7 +131,13 @@ def _requirement(req: Requirement) -> Iterator[tuple[str, str]]:
         value = req.values.get(one.key)
         if value is None or value == ():
             continue
-        shown = show.quantity(value, one.unit) if isinstance(value, int | float) else ", ".join(value) if isinstance(value, tuple) else value
+        shown = (
+            show.quantity(value, one.unit)
+            if isinstance(value, int | float)
+            else ", ".join(value)
+            if isinstance(value, tuple)
+            else value
+        )
         yield f"{one.label} ({one.key})", shown
 
 
@@ -134,7 +149,13 @@ def _summary(one: CheckExplanation) -> tuple[str, ...]:
 
 def _step(step: Step) -> tuple[str, ...]:
     relation = step.relation or f"given: {step.source or step.meaning}"
-    return f"{step.symbol}, {step.meaning}" if step.meaning else step.symbol, relation, step.numbers, step.result, step.evidence
+    return (
+        f"{step.symbol}, {step.meaning}" if step.meaning else step.symbol,
+        relation,
+        step.numbers,
+        step.result,
+        step.evidence,
+    )
 
 
 def _repeated(step: Step, seen: set[tuple[str, str]]) -> bool:

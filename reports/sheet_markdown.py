@@ -16,7 +16,9 @@ def _block(block: Block) -> str:
         return block.text
     if isinstance(block, Bullets):
         return "\n".join(f"- {item}" for item in block.items)
-    lines = [markdown_row(block.head), markdown_row(["---"] * len(block.head)), *(markdown_row(row) for row in block.rows)]
+    lines = [
+        markdown_row(block.head),
+        markdown_row(["---"] * len(block.head)),
+        *(markdown_row(row) for row in block.rows),
+    ]
     return "\n".join(lines)
-
-

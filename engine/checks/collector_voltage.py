@@ -13,6 +13,8 @@ def collector_voltage(case: SwitchCase) -> Compared:
     there counts.
     """
     if case.sit.coil_energy is not None:
-        limit = Term("ES/b", case.p.es_b, "J", meaning="energy survived in breakdown", source="rating", looked_up=("ES/b",))
+        limit = Term(
+            "ES/b", case.p.es_b, "J", meaning="energy survived in breakdown", source="rating", looked_up=("ES/b",)
+        )
         return Compared(case.sit.coil_energy, limit)
     return Compared(case.b.vce_off_max, case.rating("VCEO", "vceo", "V", case.policy.voltage))

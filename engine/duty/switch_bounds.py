@@ -130,7 +130,9 @@ def _corner(sit: Situation, p: Prepared, corner: Corner, need: Need, net: _Netwo
     # the junction voltage at the needed current proves at least that current (see physics.junction)
     values = np.where(upper >= need.ib, np.maximum(traced.values, need.ib), upper)
     values = np.where(np.isnan(need.ib), traced.values, values)
-    ib_min = Term(traced.symbol, values, "A", traced.evidence, traced.meaning, formula=traced.formula, inputs=traced.inputs)
+    ib_min = Term(
+        traced.symbol, values, "A", traced.evidence, traced.meaning, formula=traced.formula, inputs=traced.inputs
+    )
     forced = Term("β forced", _ratio(corner.ic.values, values), "", ib_min.evidence, "largest IC ÷ IB", source="IC max ÷ IB min",
                   inputs={"IC": corner.ic, "IB": ib_min})  # fmt: skip
     v_room = saturation.saturation_at_room.traced(
@@ -177,8 +179,12 @@ def _heat(
     ic = float(sit.ic_max.values)
     hottest = given("TA max", sit.number("ambient.max"), "°C", "hottest ambient")
     tj_guess = Term("TJ taken", guess, "°C", Evidence.DERIVED, "junction temperature at which VBE is smallest")
-    floor_v = Term("V floor", p.floor_v, "V", Evidence.DERIVED, "junction floor at 25 °C", "VBE minimum on file or common practice")
-    floor_i = Term("I floor", p.floor_i, "A", Evidence.DERIVED, "its current", "a tenth of IC, or the test current", ("IC",))
+    floor_v = Term(
+        "V floor", p.floor_v, "V", Evidence.DERIVED, "junction floor at 25 °C", "VBE minimum on file or common practice"
+    )
+    floor_i = Term(
+        "I floor", p.floor_i, "A", Evidence.DERIVED, "its current", "a tenth of IC, or the test current", ("IC",)
+    )
     least = given("IC least", _lightest(sit, n), "A", "lightest load")
     vbe_min = junction.vbe_hot(IC=least, TJ=tj_guess, V_floor=floor_v, I_floor=floor_i)
     ib_max = drive.base_current(
@@ -203,7 +209,9 @@ def _heat(
     p_cold = Term("P other", share.values * (base_loss + extra) + edges.values, "W", ib_max.evidence,
                   "VBE × IB × share and the edges", inputs={"VBE": vbe_top, "IB": ib_max, "edges": edges})  # fmt: skip
     tj = thermal.junction_temperature(T_A=hottest, Rth=rth, P_cold=p_cold, P_sat=p_sat, rise_rate=rise)
-    settled = Term("TJ max", np.minimum(tj.values, 1e3), "°C", tj.evidence, tj.meaning, formula=tj.formula, inputs=tj.inputs)
+    settled = Term(
+        "TJ max", np.minimum(tj.values, 1e3), "°C", tj.evidence, tj.meaning, formula=tj.formula, inputs=tj.inputs
+    )
     hot = saturation.hot_factor(TJ=settled)
     cold = Term("cold rise", cold_rise(sit, p), "V", meaning="what a Darlington gains when cold")
     vce_on = saturation.on_voltage(VCE_sat=v_room, hot=hot, cold_rise=cold)
@@ -229,8 +237,18 @@ def _resistance(sit: Situation, p: Prepared) -> tuple[Term, Term]:
     if np.isnan(sink):
         rth = Term("RthJA", p.rth_ja, "K/W", p.rth_ja_grade, "thermal resistance in the sheet's own mounting", "rating or derating line",
                    ("RthJA",))  # fmt: skip
-        return rth, _rating("PD", np.where(np.isnan(p.pd_ambient), np.inf, p.pd_ambient), "power rating at 25 °C ambient")
-    case = Term("RthJC", p.rth_jc, "K/W", p.rth_jc_grade, "thermal resistance to the case", "rating or derating line", ("RthJC",))
+        return rth, _rating(
+            "PD", np.where(np.isnan(p.pd_ambient), np.inf, p.pd_ambient), "power rating at 25 °C ambient"
+        )
+    case = Term(
+        "RthJC",
+        p.rth_jc,
+        "K/W",
+        p.rth_jc_grade,
+        "thermal resistance to the case",
+        "rating or derating line",
+        ("RthJC",),
+    )
     rth = thermal.resistance_with_sink(RthJC=case, RthCA=given("RthCA", sink, "K/W", "case to ambient, heat sink"))
     return rth, _rating("PD", np.where(np.isnan(p.pd_case), np.inf, p.pd_case), "power rating at 25 °C case")
 
@@ -288,7 +306,9 @@ def _times(
     test = _test_terms(p, "off")
     with np.errstate(all="ignore"):
         low_vbe = np.maximum(vbe_min.values - float(thermal_voltage(ROOM)) * np.log(10), 0.0)  # a decade less current
-        through_rb = np.where(sit.off_open, 0.0, (low_vbe - sit.off_level.values) / (net.rb.values * net.up.values + net.r_drive.values))
+        through_rb = np.where(
+            sit.off_open, 0.0, (low_vbe - sit.off_level.values) / (net.rb.values * net.up.values + net.r_drive.values)
+        )
         reverse = np.maximum(through_rb, 0.0) + low_vbe / (net.rbe.values * net.up.values) - sit.off_leak
         gain_at_test = either(p.gain.at(p.off_ic, p.slope_below), p.gain_low.at(p.off_ic, p.slope_below))
     ibr = Term("IBR min", reverse, "A", Evidence.DERIVED, "lowest reverse base current while turning off")
@@ -306,7 +326,9 @@ def _test_terms(p: Prepared, edge: str) -> dict[str, Term]:
     columns = {"time": ("s", f"{symbol} limit"), "ic": ("A", "IC of the test"), "ib": ("A", "IB1 of the test"),
                "ib2": ("A", "IB2 of the test"), "vcc": ("V", "supply of the test")}  # fmt: skip
     return {
-        name: Term(meaning, getattr(p, f"{edge}_{name}"), unit, meaning=meaning, source="limit on file", looked_up=(symbol,))
+        name: Term(
+            meaning, getattr(p, f"{edge}_{name}"), unit, meaning=meaning, source="limit on file", looked_up=(symbol,)
+        )
         for name, (unit, meaning) in columns.items()
         if hasattr(p, f"{edge}_{name}")
     }
@@ -326,7 +348,14 @@ def _off_current(sit: Situation, p: Prepared, net: _Network, hot: Floats) -> Ter
     )
     floor_i = Term("I floor", p.floor_i, "A", Evidence.DERIVED, "current of the junction floor", looked_up=("IC",))
     floor_v = leakage.floor_hot(
-        V_floor=Term("V floor", p.floor_v, "V", Evidence.DERIVED, "junction floor at 25 °C", "VBE minimum on file or common practice"),
+        V_floor=Term(
+            "V floor",
+            p.floor_v,
+            "V",
+            Evidence.DERIVED,
+            "junction floor at 25 °C",
+            "VBE minimum on file or common practice",
+        ),
         TJ=tj,
     )
     vt = Term("VT", np.asarray(thermal_voltage(hot)), "V", Evidence.DERIVED, "kT/q")

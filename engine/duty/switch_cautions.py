@@ -21,7 +21,9 @@ def cautions(req: Requirement) -> tuple[str, ...]:
             "Work for a qualified person, under the local code."
         )
     if req.word("load.kind") == "coil" and req.word("load.clamp") == "none":
-        said.append("Nothing clamps the coil: at turn-off its energy goes into the transistor. Fit a diode across the coil.")
+        said.append(
+            "Nothing clamps the coil: at turn-off its energy goes into the transistor. Fit a diode across the coil."
+        )
     if req.word("load.kind") == "lamp":
         said.append("A cold filament draws many times its hot current; repeated inrush ages the transistor.")
     said.append("A transistor mostly fails short: the load then stays on. Provide for it where that is dangerous.")

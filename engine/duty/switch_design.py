@@ -226,7 +226,9 @@ def window(sit: Situation, p: Prepared, n: Needs, rbe: Floats) -> tuple[Floats, 
     """Smallest and largest nominal RB that every corner leaves with this RBE. [Ω]"""
     tol, r_drive = sit.number("resistors.tolerance"), sit.number("drive.resistance")
     strongest = float(sit.drive_max.values)
-    by_driver = drive.rb_smallest(np.asarray(strongest), n.vbe_min, np.asarray(sit.number("drive.current_max")), r_drive, tol)
+    by_driver = drive.rb_smallest(
+        np.asarray(strongest), n.vbe_min, np.asarray(sit.number("drive.current_max")), r_drive, tol
+    )
     # RBE takes its share before the base: what it takes at the least VBE is not lost on the base's limit
     base_share = n.ib_limit + n.vbe_min / (rbe * (1 + tol))
     by_base = drive.rb_smallest(np.asarray(strongest), n.vbe_min, base_share, r_drive, tol)
@@ -323,9 +325,7 @@ def rbe_interval(sit: Situation, n: Needs, rb: Floats) -> tuple[Floats, Floats]:
     return least, most
 
 
-def at_place(
-    low: Floats, high: Floats, place: float, series: str, ends: tuple[Floats, Floats] | None = None
-) -> Floats:
+def at_place(low: Floats, high: Floats, place: float, series: str, ends: tuple[Floats, Floats] | None = None) -> Floats:
     """The preferred value at a place (0 lowest, 1 highest) of a window on a ratio scale, inside it if one is.
 
     `ends` are the lowest and the highest preferred value inside, where the caller already has them.

@@ -57,7 +57,9 @@ def situation(req: Requirement) -> Situation:
     drive_max, corners = _drive(req, pnp, vs_min, vs_max, ic_max, ic_low, r_min)
     off_open = pnp and req.word("drive.off") == "open"
     if pnp:
-        off = given("V off", 0.0 if off_open else req.number("drive.off_drop_max"), "V", "driver below the supply when off")
+        off = given(
+            "V off", 0.0 if off_open else req.number("drive.off_drop_max"), "V", "driver below the supply when off"
+        )
     else:
         off = given("VOL max", req.number("drive.low_max"), "V", "highest low level of the driver")
     v_off, energy, inductive = _turn_off(req, vs_max, ic_max)
@@ -85,7 +87,9 @@ def _currents(
         nominal = given("R load", req.number("load.resistance"), "Ω", "resistance of the load")
     else:
         stated = given("I load", req.number("load.current"), "A", "current of the load at the highest supply")
-        nominal = Term("R load", vs_max.values / stated.values, "Ω", meaning="resistance of the load", source="requirement")
+        nominal = Term(
+            "R load", vs_max.values / stated.values, "Ω", meaning="resistance of the load", source="requirement"
+        )
     if kind == "coil":
         cold = given("T cold", req.number("ambient.min"), "°C", "coldest ambient")
         hot = given("T hot", req.number("ambient.max"), "°C", "hottest ambient")
@@ -95,7 +99,9 @@ def _currents(
         r_min = load.resistor(symbol="R min", meaning="least resistance of the load", R=nominal, tolerance=down)
         r_max = load.resistor(symbol="R max", meaning="most resistance of the load", R=nominal, tolerance=up)
     most = load.load_current(symbol="IC max", meaning="highest load current", VS=vs_max, VCE=zero, R=r_min)
-    low = load.load_current(symbol="IC max", meaning="highest load current, lowest supply", VS=vs_min, VCE=zero, R=r_min)
+    low = load.load_current(
+        symbol="IC max", meaning="highest load current, lowest supply", VS=vs_min, VCE=zero, R=r_min
+    )
     return most, low, r_min, r_max, None
 
 

@@ -46,9 +46,7 @@ def mean_loss(share: Floats, P_on: Floats, P_edges: Floats) -> Floats:
          words="the fixed point of TJ = TA + Rth·P(TJ), where the on-voltage grows by 0.7 %/K; no value when each kelvin "
                "heats by more than a kelvin (runaway)",
          source="jesd51")  # fmt: skip
-def junction_temperature(
-    T_A: Floats, Rth: Floats, P_cold: Floats, P_sat: Floats, rise_rate: Floats
-) -> Floats:
+def junction_temperature(T_A: Floats, Rth: Floats, P_cold: Floats, P_sat: Floats, rise_rate: Floats) -> Floats:
     """Closed solution of the fixed point; infinite on runaway. [°C]
 
     P_cold  the loss that does not depend on temperature. [W]   P_sat  VCE(sat)·IC at 25 °C, weighted. [W]

@@ -91,9 +91,7 @@ class _Rows:
         return _as_limit(symbol, bounds, values, pulsed, cell("source"), said.note)
 
 
-def _as_limit(
-    symbol: Symbol, bounds: Bounds, values: dict[str, float], pulsed: bool, source: str, note: str
-) -> Limit:
+def _as_limit(symbol: Symbol, bounds: Bounds, values: dict[str, float], pulsed: bool, source: str, note: str) -> Limit:
     kept = tuple(sorted((name, value) for name, value in values.items() if name in CONDITIONS))
     flag = bounds.flag
     if symbol.name == "hfe" and pulsed and "f" not in values:

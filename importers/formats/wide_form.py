@@ -118,7 +118,9 @@ def _limit(name: str, fields: dict[str, _Text], structure: str, source: str) -> 
         if condition in texts or wanted is None:
             continue
         values[condition] = magnitude(condition, _condition(text, wanted), pnp=structure.startswith("pnp"))
-    return Limit(name, bounds.min, bounds.typ, bounds.max, tuple(sorted(values.items())), False, source, "", bounds.flag)
+    return Limit(
+        name, bounds.min, bounds.typ, bounds.max, tuple(sorted(values.items())), False, source, "", bounds.flag
+    )
 
 
 def _condition(text: _Text, wanted: str) -> float:

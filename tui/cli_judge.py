@@ -1,0 +1,181 @@
+"""Commands that judge: rank, sheet, judge."""
+
+import json
+from collections.abc import Mapping
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+import click
+
+from .cli_support import BAD_INPUT, NOTHING_FITS, fail, give, open_store, read_requirement_file, rows_of, today
+
+if TYPE_CHECKING:
+    from engine.ranking import Ranking
+
+FILE = click.Path(path_type=Path)
+OUTPUT = click.option("--output", "-o", type=FILE, help="Write into this file, whole or not at all.")
+REQUIREMENT = click.argument("requirement", type=FILE, metavar="REQUIREMENT.toml")
+TOP = 20
+
+
+def one_format(json_: bool, csv: bool, markdown: bool) -> str:
+    """The one format that was asked for; text when none was."""
+    asked = [name for name, yes in (("json", json_), ("csv", csv), ("markdown", markdown)) if yes]
+    if len(asked) > 1:
+        raise click.UsageError(f"--{asked[0]} and --{asked[1]} exclude each other")
+    return asked[0] if asked else "text"
+
+
+@click.command()
+@REQUIREMENT
+@click.option("--part", "parts", multiple=True, metavar="TYPE", help="Judge only these parts (may be repeated).")
+@click.option("--top", type=click.IntRange(1), default=TOP, show_default=True, help="At most this many parts.")
+@click.option("--all", "everything", is_flag=True, help="Every part, whatever its verdict.")
+@click.option("--json", "json_", is_flag=True, help="One JSON object.")
+@click.option("--csv", is_flag=True, help="CSV in SI units.")
+@click.option("--markdown", is_flag=True, help="A Markdown table.")
+@OUTPUT
+@click.pass_context
+def rank(context: click.Context, requirement: Path, parts: tuple[str, ...], top: int, everything: bool, json_: bool,
+         csv: bool, markdown: bool, output: Path | None) -> None:  # fmt: skip
+    """Rank the parts on the shelf under a requirement."""
+    form = one_format(json_, csv, markdown)
+    stated = read_requirement_file(requirement)
+    with open_store(context) as store:
+        shelf = store.shelf()
+    from engine.rank import rank as rank_shelf
+    from engine.ranking import Verdict
+
+    if parts:
+        import numpy as np
+
+        shelf = shelf.take(np.array(rows_of(shelf, parts), dtype=np.intp))
+    ranking = rank_shelf(stated.requirement, shelf, weights=stated.weights)
+    order = [int(row) for row in ranking.order]
+    if not everything and not parts:
+        best = [row for row in order if ranking.verdict[row] <= Verdict.FITS_ON_TYPICALS]
+        order = (order if form == "json" else best)[:top]
+    give(_ranked(ranking, order, form), output)
+    if form == "text":
+        click.echo(_tally(ranking), err=True)
+    if ranking.count(Verdict.FITS) == 0:
+        context.exit(NOTHING_FITS)
+
+
+def _ranked(ranking: "Ranking", rows: list[int], form: str) -> str:
+    from reports import ranking_table
+    from reports.ranking_json import ranking_object
+
+    if form == "json":
+        from engine.explain import explain
+
+        told = [(row, explain(ranking.requirement, ranking.shelf, row)) for row in rows]
+        return json.dumps(ranking_object(ranking, told), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
+    if form == "csv":
+        return ranking_table.csv_table(ranking, rows)
+    if form == "markdown":
+        return ranking_table.markdown_table(ranking, rows)
+    if rows:
+        return ranking_table.text_table(ranking, rows)
+    nearest = [int(row) for row in ranking.order[:5]]
+    return (
+        "nothing fits; the nearest are\n" + ranking_table.text_table(ranking, nearest)
+        if nearest
+        else "the shelf is empty\n"
+    )
+
+
+def _tally(ranking: "Ranking") -> str:
+    from engine.ranking import Verdict
+
+    counts = ", ".join(f"{ranking.count(verdict)} {verdict.words}" for verdict in Verdict)
+    notes = "".join(f"\nnote: {note}" for note in ranking.requirement.notes)
+    return f"{len(ranking.shelf)} parts: {counts}{notes}"
+
+
+@click.command()
+@click.argument("type_number", metavar="TYPE")
+@REQUIREMENT
+@click.option("--markdown", is_flag=True, help="Markdown (the default).")
+@click.option("--json", "json_", is_flag=True, help="One JSON object.")
+@click.option("--html", is_flag=True, help="One self-contained HTML file.")
+@OUTPUT
+@click.pass_context
+def sheet(context: click.Context, type_number: str, requirement: Path, markdown: bool, json_: bool, html: bool,
+          output: Path | None) -> None:  # fmt: skip
+    """The calculation sheet of one part: every formula with its numbers, evidence and source."""
+    if sum((markdown, json_, html)) > 1:
+        raise click.UsageError("--markdown, --json and --html exclude each other")
+    stated = read_requirement_file(requirement)
+    with open_store(context) as store:
+        shelf = store.shelf()
+    from engine.explain import explain
+    from reports.sheet import Sheet, sheet_object
+    from reports.sheet_html import sheet_html
+    from reports.sheet_markdown import sheet_markdown
+
+    (row,) = rows_of(shelf, (type_number,))
+    one = Sheet(stated.requirement, explain(stated.requirement, shelf, row), shelf.fingerprint, today())
+    if json_:
+        give(json.dumps(sheet_object(one), ensure_ascii=False, indent=1, allow_nan=False) + "\n", output)
+    else:
+        give(sheet_html(one) if html else sheet_markdown(one), output)
+
+
+@click.command()
+@REQUIREMENT
+@click.option("--part", "type_number", required=True, metavar="TYPE", help="The part.")
+@click.option("--network", required=True, metavar="rb=2200,rbe=10000", help="The base network, in Ω or as 2k2.")
+@click.option("--json", "json_", is_flag=True, help="The object of `rank --json` for this part and network.")
+@OUTPUT
+@click.pass_context
+def judge(context: click.Context, requirement: Path, type_number: str, network: str, json_: bool,
+          output: Path | None) -> None:  # fmt: skip
+    """Judge a given base network instead of choosing one."""
+    stated = read_requirement_file(requirement)
+    given = read_network(network)
+    with open_store(context) as store:
+        shelf = store.shelf()
+    import numpy as np
+
+    from engine.explain import explain
+    from engine.rank import rank as rank_shelf
+    from engine.ranking import Verdict
+    from reports.ranking_json import ranking_object
+
+    shelf = shelf.take(np.array(rows_of(shelf, (type_number,)), dtype=np.intp))
+    ranking = rank_shelf(stated.requirement, shelf, weights=stated.weights, network=given)
+    told = explain(stated.requirement, shelf, 0, network=given)
+    if json_:
+        text = json.dumps(ranking_object(ranking, [(0, told)]), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
+    else:
+        lines = [
+            f"{told.part}: {told.verdict}",
+            told.network_says,
+            *(f"{c.status:8}{c.name}: {c.says}" for c in told.checks),
+        ]
+        text = "\n".join(lines) + "\n"
+    give(text, output)
+    if ranking.verdict[0] != Verdict.FITS:
+        context.exit(NOTHING_FITS)
+
+
+def read_network(text: str) -> Mapping[str, float]:
+    """rb and rbe in Ω from `rb=2200,rbe=10k`."""
+    from importers.quantities import QuantityError, read_quantity
+
+    found: dict[str, float] = {}
+    for piece in text.split(","):
+        name, _, value = piece.partition("=")
+        name = name.strip()
+        if name not in ("rb", "rbe"):
+            fail(f"--network: {piece.strip()!r} is not known; write rb=2200 or rb=2200,rbe=10k", BAD_INPUT)
+        try:
+            found[name] = read_quantity(value, "Ω")
+        except QuantityError as error:
+            fail(f"--network: {name} is {value!r}: {error.says}; {error.mend}", BAD_INPUT)
+        if found[name] <= 0:
+            fail(f"--network: {name} is {value!r}; a resistor is above zero", BAD_INPUT)
+    if "rb" not in found:
+        fail("--network: rb is missing; write rb=2200", BAD_INPUT)
+    return found
