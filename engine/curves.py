@@ -60,9 +60,10 @@ class Curve:
 
     def take(self, rows: "slice | NDArray[np.intp]") -> "Curve":
         """The curves of some parts; a slice gives views."""
-        one = (self.x0, self.y0, self.top)
-        many = (self.start, self.length, self.slope)
-        return Curve(*(c[rows] for c in one), *(c[:, rows] for c in many), self.vce[rows], self.grades[rows])
+        return Curve(
+            self.x0[rows], self.y0[rows], self.top[rows], self.start[:, rows], self.length[:, rows], self.slope[:, rows],
+            self.vce[rows], self.grades[rows],
+        )  # fmt: skip
 
 
 def _merge_equal(x: Floats, y: Floats) -> None:

@@ -53,7 +53,8 @@ def overall(wanted: Mapping[str, Floats], weights: Mapping[str, float]) -> Float
         logs = sum(
             weights.get(name, 0.0) / total * np.log(d) for name, d in wanted.items() if weights.get(name, 0.0) > 0
         )
-        return np.exp(np.asarray(logs))
+        combined: Floats = np.exp(np.asarray(logs))
+        return combined
 
 
 def criteria(

@@ -6,6 +6,7 @@ from a derating line, a gain floor from its points, a typical value (graded so) 
 
 from collections.abc import Mapping
 from dataclasses import dataclass, fields
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -91,7 +92,7 @@ class Prepared:
 
     def take(self, rows: "slice | NDArray[np.intp]") -> "Prepared":
         """Some of the parts; a slice gives views."""
-        cut = {}
+        cut: dict[str, Any] = {}
         for one in fields(self):
             value = getattr(self, one.name)
             cut[one.name] = value.take(rows) if isinstance(value, Curve) else value[..., rows]
@@ -101,7 +102,7 @@ class Prepared:
 def prepare(shelf: Shelf) -> Prepared:
     """Everything a requirement needs of `shelf`."""
     with np.errstate(all="ignore"):
-        columns: dict[str, Floats | Mask | Grades | Curve] = {}
+        columns: dict[str, Any] = {}
         columns |= _structure(shelf)
         columns |= _ratings(shelf)
         columns |= _thermal(shelf)
@@ -111,7 +112,7 @@ def prepare(shelf: Shelf) -> Prepared:
         columns |= _leakage(shelf, columns)
         columns |= _times(shelf)
         columns |= _safe_area(shelf)
-        return Prepared(**columns)  # type: ignore[arg-type]
+        return Prepared(**columns)
 
 
 def _structure(shelf: Shelf) -> dict[str, Mask]:
@@ -223,7 +224,7 @@ def _junction_floor(shelf: Shelf) -> Floats:
     return np.where(np.isinf(most), sure, np.minimum(sure, most))
 
 
-def _gain(shelf: Shelf, ready: dict[str, Floats | Mask | Grades | Curve]) -> dict[str, Floats | Curve]:
+def _gain(shelf: Shelf, ready: Mapping[str, Any]) -> dict[str, Floats | Curve]:
     points = shelf.points["hFE"]
     gain, typical = _limit_or_typical(points["min"], points["typ"])
     gain = _worst_of_same(gain, np.minimum, points["ic"], points["vce"], points["temp"])
@@ -235,8 +236,8 @@ def _gain(shelf: Shelf, ready: dict[str, Floats | Mask | Grades | Curve]) -> dic
     ic, vce = points["ic"], points["vce"]
     curve = Curve.through(ic, gain, vce, high, typical)
     curve_low = Curve.through(ic, gain, vce, low, typical)
-    tests = tuple(np.asarray(ready[name]) for name in ("sat_ic", "sat_ib", "sat_v", "sat_grade"))
-    darlington = np.asarray(ready["darlington"])
+    tests = tuple(ready[name] for name in ("sat_ic", "sat_ib", "sat_v", "sat_grade"))
+    darlington = ready["darlington"]
     slope = np.where(darlington, 1.0, 0.5)
     usual = np.where(darlington, DARLINGTON_EXPONENT, COLD_EXPONENT)
     exponent = _cold_exponent(points, gain, stated & (points["temp"] < 15), (curve, curve_low), slope)
@@ -286,13 +287,13 @@ def _cold_exponent(
     return np.where(np.isinf(hardest), np.nan, np.maximum(hardest, 0.0))
 
 
-def _leakage(shelf: Shelf, ready: dict[str, Floats | Mask | Grades | Curve]) -> dict[str, Floats | Grades]:
+def _leakage(shelf: Shelf, ready: Mapping[str, Any]) -> dict[str, Floats | Grades]:
     """Collector leakage maximums. A Darlington's inner base floats and multiplies: only the open-base limit counts."""
     leak = shelf.points["leakage"]
     v, typical = _limit_or_typical(leak["max"], leak["typ"])
     v = _worst_of_same(v, np.maximum, leak["v"], leak["temp"], leak["symbol"])
     open_base = leak["symbol"] == SYMBOL_CODES["ICEO"]
-    used = ~np.isnan(v) & ~np.isnan(leak["v"]) & (open_base | ~np.asarray(ready["darlington"]))
+    used = ~np.isnan(v) & ~np.isnan(leak["v"]) & (open_base | ~ready["darlington"])
     return {
         "leak_t": np.where(used, leak["temp"], np.nan),
         "leak_v": np.where(used, leak["v"], np.nan),

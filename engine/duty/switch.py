@@ -51,21 +51,18 @@ def _outcomes(sit: Situation, p: Prepared, shelf: Shelf, n: Needs, net: Network)
 
 def _best(sit: Situation, p: Prepared, shelf: Shelf, n: Needs) -> tuple[Network, tuple[Outcome, ...], Bounds]:
     """The chosen network; where only the network's own checks fail, stiffer ones are tried."""
-    plain = design(sit, p, n)
-    outcomes, b = _outcomes(sit, p, shelf, n, plain)
-    net, changed = plain, False
+    net = plain = design(sit, p, n)
+    outcomes, b = _outcomes(sit, p, shelf, n, net)
     for place in RETRIES:
-        open_question = _only_network(outcomes) if not changed else _only_network(latest)
+        open_question = _only_network(outcomes)
         if not open_question.any():
             break
         other = stiffest(sit, p, n, plain, place)
-        trial = net.where(open_question, other)
-        latest, _ = _outcomes(sit, p, shelf, n, trial)
-        better = open_question & (_worst(latest) < _worst(outcomes))
+        tried, _ = _outcomes(sit, p, shelf, n, net.where(open_question, other))
+        better = open_question & (_worst(tried) < _worst(outcomes))
         if better.any():
             net = net.where(better, other)
             outcomes, b = _outcomes(sit, p, shelf, n, net)
-        latest, changed = outcomes, True
     return net, outcomes, b
 
 
@@ -78,7 +75,8 @@ def _only_network(outcomes: tuple[Outcome, ...]) -> NDArray[np.bool_]:
         wrong |= bad
         if not one.check.chosen or one.check.name in ("base drive", "driver current", "base drive, inrush"):
             fixed |= bad  # the window itself is empty, or it is not the network's doing
-    return wrong & ~fixed
+    undecided: NDArray[np.bool_] = wrong & ~fixed
+    return undecided
 
 
 def _worst(outcomes: tuple[Outcome, ...]) -> NDArray[np.int8]:
@@ -115,7 +113,8 @@ def _bound_columns(b: Bounds, n: int) -> dict[str, Floats]:
 
 def eligible(req: Requirement, p: Prepared) -> NDArray[np.bool_]:
     """Parts of the right polarity, and those whose structure nobody stated. Shape (n,)."""
-    return ~p.known | (p.pnp == (req.word("position") == "high side"))
+    right: NDArray[np.bool_] = ~p.known | (p.pnp == (req.word("position") == "high side"))
+    return right
 
 
 DUTY = Duty("switch", FIELDS, complete, judge, eligible, cautions)

@@ -1,5 +1,6 @@
 """What a switch with its network does at the worst: every bound as a traced term."""
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -14,12 +15,10 @@ from .switch_design import (
     Need,
     Needs,
     Network,
-    cold_factor,
     cold_rise,
     either,
     junction_limit,
-    stated_gain,
-    switch_witnesses,
+    lightest_load,
     vbe_highest,
 )
 from .switch_situation import Corner, Situation
@@ -63,11 +62,13 @@ class Bounds:
 
     @property
     def ib_on_min(self) -> Floats:
-        return np.min(np.broadcast_arrays(*(c.ib_min.values for c in self.corners)), axis=0)
+        least: Floats = np.min(np.broadcast_arrays(*(c.ib_min.values for c in self.corners)), axis=0)
+        return least
 
     @property
     def forced_beta_max(self) -> Floats:
-        return np.max(np.broadcast_arrays(*(c.forced_beta.values for c in self.corners)), axis=0)
+        most: Floats = np.max(np.broadcast_arrays(*(c.forced_beta.values for c in self.corners)), axis=0)
+        return most
 
 
 def bounds(sit: Situation, p: Prepared, n: Needs, net: Network) -> Bounds:
@@ -108,7 +109,7 @@ class _Network:
 def _corner(sit: Situation, p: Prepared, corner: Corner, need: Need, net: _Network) -> CornerBounds:
     ic = float(corner.ic.values)
     beta = saturation.beta_at_room.traced(
-        need.beta_allowed, _sat_grade(p), ("VCE(sat)",), IC=corner.ic,
+        need.beta_allowed, p.sat_grade, ("VCE(sat)",), IC=corner.ic,
         hFE=Term("hFE floor", need.gain_stated, "", p.gain.grades, "gain floor at the coldest", "hFE limits on file"),
     )  # fmt: skip
     floor = Term("hFE min", np.where(np.isnan(need.gain_stated), np.inf, need.gain_stated), "",
@@ -136,7 +137,7 @@ def _corner(sit: Situation, p: Prepared, corner: Corner, need: Need, net: _Netwo
     forced = Term("β forced", _ratio(corner.ic.values, values), "", ib_min.evidence, "largest IC ÷ IB", source="IC max ÷ IB min",
                   inputs={"IC": corner.ic, "IB": ib_min})  # fmt: skip
     v_room = saturation.saturation_at_room.traced(
-        _quiet(saturation.v_promised, need.witnesses, forced.values), _sat_grade(p), ("VCE(sat)",), IC=corner.ic,
+        _quiet(saturation.v_promised, need.witnesses, forced.values), p.sat_grade, ("VCE(sat)",), IC=corner.ic,
         beta=forced,
     )  # fmt: skip
     return CornerBounds(corner.ic, needed, ib_min, forced, v_room)
@@ -185,7 +186,7 @@ def _heat(
     floor_i = Term(
         "I floor", p.floor_i, "A", Evidence.DERIVED, "its current", "a tenth of IC, or the test current", ("IC",)
     )
-    least = given("IC least", _lightest(sit, n), "A", "lightest load")
+    least = given("IC least", lightest_load(sit, float(np.max(n.v_on_most))), "A", "lightest load")
     vbe_min = junction.vbe_hot(IC=least, TJ=tj_guess, V_floor=floor_v, I_floor=floor_i)
     ib_max = drive.base_current(
         "IB max", "highest base current", V_drive=sit.drive_max, VBE=vbe_min, RB=net.rb, RB_factor=net.down,
@@ -235,8 +236,8 @@ def _worst_room_voltage(corners: tuple[CornerBounds, ...]) -> Term:
 def _resistance(sit: Situation, p: Prepared) -> tuple[Term, Term]:
     sink = sit.number("heatsink.case_to_ambient")
     if np.isnan(sink):
-        rth = Term("RthJA", p.rth_ja, "K/W", p.rth_ja_grade, "thermal resistance in the sheet's own mounting", "rating or derating line",
-                   ("RthJA",))  # fmt: skip
+        meaning, source = "thermal resistance in the mounting of the sheet", "rating or derating line"
+        rth = Term("RthJA", p.rth_ja, "K/W", p.rth_ja_grade, meaning, source, ("RthJA",))
         return rth, _rating(
             "PD", np.where(np.isnan(p.pd_ambient), np.inf, p.pd_ambient), "power rating at 25 °C ambient"
         )
@@ -375,16 +376,6 @@ def _least_current(sit: Situation, vce_on: Term) -> Term:
     return load.load_current(symbol="IC min", meaning="lowest load current", VS=sit.vs_min, VCE=vce_on, R=sit.r_max)
 
 
-def _lightest(sit: Situation, n: Needs) -> float:
-    from .switch_design import _least_current as lightest
-
-    return lightest(sit, float(np.max(n.v_on_most)))
-
-
-def _sat_grade(p: Prepared) -> NDArray[np.int8]:
-    return p.sat_grade
-
-
 def _typical(p: Prepared) -> bool:
     return bool((p.gain.grades >= Evidence.TYPICAL).any() or (p.gain_low.grades >= Evidence.TYPICAL).any())
 
@@ -394,9 +385,7 @@ def _ratio(a: Floats, b: Floats) -> Floats:
         return a / b
 
 
-def _quiet(law: object, *arguments: object) -> Floats:
+def _quiet(law: Callable[..., Floats], *arguments: object) -> Floats:
+    """A law over points of the sheets, where NaN and infinity are answers."""
     with np.errstate(all="ignore"):
-        return law(*arguments)  # type: ignore[operator, no-any-return]
-
-
-__all__ = ["Bounds", "CornerBounds", "bounds", "cold_factor", "stated_gain", "switch_witnesses"]
+        return law(*arguments)

@@ -26,4 +26,5 @@ def allowed_current(v: Floats, corner_v: Floats, corner_i: Floats) -> Floats:
             inside = known & (last_x < x) & (x <= here_x)
             result = np.where(inside, last_y + (here_y - last_y) * (x - last_x) / (here_x - last_x), result)
             last_x, last_y = np.where(known, here_x, last_x), np.where(known, here_y, last_y)
-        return np.exp(result)
+        allowed: Floats = np.exp(result)
+        return allowed

@@ -69,8 +69,7 @@ def witnesses(
         ohmic.append(np.full_like(share, np.nan))
         beta.append(ic / (low_ib + share * (ib_t - low_ib)))
         beta_cold.append(beta[-1] * cold)
-    stacked = (np.stack(rows) for rows in (v, ohmic, beta, beta_cold))
-    return Witnesses(*stacked, gain, gain_low, v_gain, stretch)
+    return Witnesses(np.stack(v), np.stack(ohmic), np.stack(beta), np.stack(beta_cold), gain, gain_low, v_gain, stretch)
 
 
 def beta_allowed(w: Witnesses, v_most: Floats) -> Floats:

@@ -47,8 +47,9 @@ class _Rows:
 
     def read(self, row: int, cells: tuple[str, ...]) -> Iterator[Arrival | RowProblem]:
         if len(cells) > self.width:
-            raise CellError("row", ",".join(cells[self.width :]), "too-many-cells",
-                            f"{len(cells)} cells under {self.width} headings; put quotes around a text that holds the delimiter")  # fmt: skip
+            extra = ",".join(cells[self.width :])
+            says = f"{len(cells)} cells under {self.width} headings; put quotes around a text that holds the delimiter"
+            raise CellError("row", extra, "too-many-cells", says)
 
         def cell(name: str) -> str:
             place = self.columns.get(name)
