@@ -55,20 +55,22 @@ def demo(context: click.Context, write: Path | None) -> None:
 
     with tempfile.TemporaryDirectory(prefix="betafloor-demo-") as folder:
         click.echo("The parts, their limits and the stock of this shelf are invented.", err=True)
-        context.exit(_interface(write_demo(Path(folder)), demo=True))
+        asked = Path(folder) / REQUIREMENTS[0]
+        asked.write_text(example(asked.name), encoding="utf-8")
+        context.exit(_interface(write_demo(Path(folder)), demo=True, requirement=asked))
 
 
 for _command in (import_, rank, sheet, judge, part, shortlist, stock, backup, check):
     cli.add_command(_command)
 
 
-def _interface(path: Path, *, demo: bool) -> int:
-    """Show the interface on a shelf file."""
+def _interface(path: Path, *, demo: bool, requirement: Path | None = None) -> int:
+    """Show the interface on a shelf file, with a requirement loaded if one is given."""
     if not sys.stdout.isatty() or not sys.stdin.isatty():
         fail("the interface needs a terminal; use a command such as `betafloor rank`, see --help", BAD_INPUT)
     from .app import run
 
-    return run(path, demo=demo)
+    return run(path, demo=demo, requirement=requirement)
 
 
 def main() -> None:
