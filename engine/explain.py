@@ -82,7 +82,7 @@ def _sentence(
     demand, allowed = outcome.compared.demand, outcome.compared.limit
     unit = demand.unit
     if status == Status.UNKNOWN and missing:
-        return f"cannot say: no usable {' or '.join(missing)} limit on file"
+        return f"cannot say: no {' or '.join(missing)} limit on file covers this point"
     if status == Status.UNKNOWN and not math.isnan(headroom):
         return (
             f"cannot say: {demand.symbol} {show.quantity(value, unit)} lies beyond {show.quantity(limit, unit)}, "
@@ -124,6 +124,8 @@ def _steps(*terms: Term) -> list[Step]:
 def _step(term: Term) -> Step:
     value = float(np.ravel(term.values)[0])
     evidence = Evidence(int(np.ravel(term.grades)[0])).word
+    if term.source in ("requirement", "chosen") and not math.isnan(value):
+        evidence = "stated" if term.source == "requirement" else "chosen"
     relation = numbers = ""
     source = term.source
     if term.formula is not None:

@@ -12,9 +12,11 @@ STRUCTURES = (
 )
 """What a part can be; a part whose structure nobody stated carries the empty string."""
 
-CONDITIONS = (
-    "ic", "ib", "ib2", "ie", "vce", "vbe", "vcb", "veb", "vcc", "rs", "f", "t", "tj", "ta", "tc",
-)  # fmt: skip
+CONDITION_UNITS = {
+    "ic": "A", "ib": "A", "ib2": "A", "ie": "A", "vce": "V", "vbe": "V", "vcb": "V", "veb": "V", "vcc": "V", "rs": "Ω",
+    "f": "Hz", "t": "s", "tj": "°C", "ta": "°C", "tc": "°C",
+}  # fmt: skip
+CONDITIONS = tuple(CONDITION_UNITS)
 """Names of the test conditions a limit can carry: SI units, temperatures in °C, magnitudes
 (a PNP's signs are taken off), `t` a pulse width; `ib` is IB1 and `ib2` the turn-off current IB2.
 `vbe` keeps its sign: negative means the junction is reverse biased."""

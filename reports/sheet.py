@@ -6,8 +6,10 @@ from typing import Any
 
 from engine import show
 from engine.duty import duties
+from engine.part import CONDITION_UNITS, Limit
 from engine.ranking import CheckExplanation, Explanation, Step
 from engine.requirement import Requirement
+from engine.symbols import SYMBOLS
 
 from .program import program
 from .ranking_json import explanation_object
@@ -54,13 +56,14 @@ class Sheet:
     told: Explanation
     fingerprint: str
     date: str
+    limits: tuple[Limit, ...] = ()  # everything on file of the part, for the reader who checks
 
 
 def blocks(sheet: Sheet) -> Iterator[Block]:
     """The sheet from its title to its sources."""
     told, req = sheet.told, sheet.requirement
     yield Heading(1, f"{told.part}: {req.title or req.duty}")
-    yield Paragraph(f"{told.verdict.capitalize()} (evidence: {told.evidence}). {told.says}.")
+    yield Paragraph(f"{told.says[0].upper()}{told.says[1:]}. Evidence: {told.evidence}.")
     yield Paragraph(
         f"{told.structure or 'structure not stated'}, {told.package or 'package not stated'}. {told.network_says}."
     )
@@ -82,6 +85,9 @@ def blocks(sheet: Sheet) -> Iterator[Block]:
         rows = tuple(_step(step) for step in one.steps if not _repeated(step, seen))
         if rows:
             yield Grid(("quantity", "relation", "with numbers", "result", "evidence"), rows)
+    if sheet.limits:
+        yield Heading(2, "Limits on file")
+        yield Grid(("symbol", "min", "typ", "max", "at", "source"), tuple(_limit(limit) for limit in sheet.limits))
     yield Heading(2, "Cautions")
     yield Bullets(told.cautions)
     yield Heading(2, "Laws and sources")
@@ -156,6 +162,14 @@ def _step(step: Step) -> tuple[str, ...]:
         step.result,
         step.evidence,
     )
+
+
+def _limit(limit: Limit) -> tuple[str, ...]:
+    unit = SYMBOLS[limit.symbol].unit if limit.symbol in SYMBOLS else ""
+    bounds = ("" if value is None else show.quantity(value, unit) for value in (limit.min, limit.typ, limit.max))
+    stated = [f"{name.upper()} {show.quantity(value, CONDITION_UNITS[name])}" for name, value in limit.conditions]
+    at = ", ".join([*stated, *(["pulsed"] if limit.pulsed else []), *([limit.note] if limit.note else [])])
+    return limit.symbol, *bounds, at, limit.source
 
 
 def _repeated(step: Step, seen: set[tuple[str, str]]) -> bool:

@@ -109,13 +109,14 @@ def sheet(context: click.Context, type_number: str, requirement: Path, markdown:
     stated = read_requirement_file(requirement)
     with open_store(context) as store:
         shelf = store.shelf()
+        limits = store.part(type_number).part.limits
     from engine.explain import explain
     from reports.sheet import Sheet, sheet_object
     from reports.sheet_html import sheet_html
     from reports.sheet_markdown import sheet_markdown
 
     (row,) = rows_of(shelf, (type_number,))
-    one = Sheet(stated.requirement, explain(stated.requirement, shelf, row), shelf.fingerprint, today())
+    one = Sheet(stated.requirement, explain(stated.requirement, shelf, row), shelf.fingerprint, today(), limits)
     if json_:
         give(json.dumps(sheet_object(one), ensure_ascii=False, indent=1, allow_nan=False) + "\n", output)
     else:

@@ -113,6 +113,7 @@ def part_show(context: click.Context, type_number: str, json_: bool) -> None:
 
 def _limit_line(limit: Any) -> str:
     from engine import show
+    from engine.part import CONDITION_UNITS
     from engine.symbols import SYMBOLS
 
     unit = SYMBOLS[limit.symbol].unit if limit.symbol in SYMBOLS else ""
@@ -121,10 +122,8 @@ def _limit_line(limit: Any) -> str:
         for name in ("min", "typ", "max")
         if getattr(limit, name) is not None
     )
-    units = {"i": "A", "v": "V", "t": "°C", "f": "Hz", "r": "Ω"}
     stated = ", ".join(
-        f"{name.upper()} {show.quantity(value, 's' if name == 't' else units[name[0]])}"
-        for name, value in limit.conditions
+        f"{name.upper()} {show.quantity(value, CONDITION_UNITS[name])}" for name, value in limit.conditions
     )
     tail = "; ".join(piece for piece in (stated, "pulsed" if limit.pulsed else "", limit.note) if piece)
     flag = f"  [look: {limit.flag}]" if limit.flag else ""

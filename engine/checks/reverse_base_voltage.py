@@ -16,4 +16,4 @@ def reverse_base_voltage(case: SwitchCase) -> Compared:
     least = min(case.requirement.number("drive.low_min"), 0.0) if not case.sit.pnp else 0.0
     vebo = np.where(np.isnan(case.p.vebo) & (least == 0), np.inf, case.p.vebo * case.policy.voltage)
     limit = Term("VEBO", vebo, "V", meaning="emitter–base voltage rating", source="rating", looked_up=("VEBO",))
-    return Compared(given("V reverse", -least, "V", "driver below the emitter"), limit)
+    return Compared(given("V reverse", abs(least), "V", "driver below the emitter"), limit)

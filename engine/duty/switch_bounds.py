@@ -1,7 +1,7 @@
 """What a switch with its network does at the worst: every bound as a traced term."""
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -84,12 +84,14 @@ def bounds(sit: Situation, p: Prepared, n: Needs, net: Network) -> Bounds:
     if hotter.any():  # beyond the first guess and yet allowed: the limit is the unkind temperature then
         guess = np.where(hotter, n.tj_limit, guess)
         heat = _heat(sit, p, n, names, corners, guess)
-    hot = np.maximum(heat.tj.values, sit.number("ambient.max"))
+    hottest = np.maximum(heat.tj.values, sit.number("ambient.max"))
+    hot = Term("TJ hot", np.where(np.isinf(hottest), np.nan, hottest), "°C", heat.tj.evidence,
+               "hottest junction, just turned off", "TJ max", inputs={"TJ": heat.tj})  # fmt: skip
     ic_on_min = _least_current(sit, heat.vce_on)
     t_on, t_off = heat.t_on, heat.t_off
     return Bounds(
         corners, inrush, sit.ic_max, ic_on_min, heat.ib_max, heat.drive, heat.vce_on, heat.on, heat.mean, heat.allowed,
-        heat.tj, heat.limit, _off_current(sit, p, names, np.where(np.isinf(hot), np.nan, hot)), _off_voltage(sit),
+        heat.tj, heat.limit, _off_current(sit, p, names, hot), _off_voltage(sit),
         t_on, t_off, heat.edge_time,
     )  # fmt: skip
 
@@ -108,13 +110,16 @@ class _Network:
 
 def _corner(sit: Situation, p: Prepared, corner: Corner, need: Need, net: _Network) -> CornerBounds:
     ic = float(corner.ic.values)
-    beta = saturation.beta_at_room.traced(
-        need.beta_allowed, p.sat_grade, ("VCE(sat)",), IC=corner.ic,
-        hFE=Term("hFE floor", need.gain_stated, "", p.gain.grades, "gain floor at the coldest", "hFE limits on file"),
-    )  # fmt: skip
-    floor = Term("hFE min", np.where(np.isnan(need.gain_stated), np.inf, need.gain_stated), "",
-                 np.maximum(p.gain.grades, p.gain_low.grades) if _typical(p) else Evidence.DERIVED,
-                 "gain floor that the sheet states, at the coldest", "hFE limits on file, chord and cold law")  # fmt: skip
+    gain_grade = np.maximum(p.gain.grades, p.gain_low.grades)
+    # a gain stated at low VCE can promise saturation without any saturation limit
+    grade = np.maximum(np.where(p.sat_grade == Evidence.MISSING, Evidence.DERIVED, p.sat_grade), gain_grade)
+    cold = Term("hFE cold", need.witnesses.gain, "", gain_grade, "gain floor at low VCE, at the coldest",
+                "hFE limits on file, chord and cold law")  # fmt: skip
+    cold = replace(cold, values=np.where(np.isnan(cold.values), 0.0, cold.values))  # nothing known: nothing claimed
+    beta = saturation.beta_at_room.traced(need.beta_allowed, grade, ("VCE(sat)",), IC=corner.ic, hFE=cold)
+    floor = Term("hFE min", np.where(np.isnan(need.gain_stated), np.inf, need.gain_stated), "", gain_grade,
+                 "gain floor that the sheet states there at 25 °C; unlimited where only saturation limits speak",
+                 "hFE limits on file and chords between them")  # fmt: skip
     inrush = corner.ic is sit.ic_inrush
     k_od = given("overdrive", 1.0 if inrush else sit.number("choice.overdrive"), "", "overdrive wanted")
     needed = drive.base_current_needed(IC=corner.ic, beta_allowed=beta, k_OD=k_od, hFE=floor)
@@ -137,8 +142,8 @@ def _corner(sit: Situation, p: Prepared, corner: Corner, need: Need, net: _Netwo
     forced = Term("β forced", _ratio(corner.ic.values, values), "", ib_min.evidence, "largest IC ÷ IB", source="IC max ÷ IB min",
                   inputs={"IC": corner.ic, "IB": ib_min})  # fmt: skip
     v_room = saturation.saturation_at_room.traced(
-        _quiet(saturation.v_promised, need.witnesses, forced.values), p.sat_grade, ("VCE(sat)",), IC=corner.ic,
-        beta=forced,
+        _quiet(saturation.v_promised, need.witnesses, forced.values), grade, ("VCE(sat)",), IC=corner.ic,
+        beta=forced, hFE=cold,
     )  # fmt: skip
     return CornerBounds(corner.ic, needed, ib_min, forced, v_room)
 
@@ -335,11 +340,10 @@ def _test_terms(p: Prepared, edge: str) -> dict[str, Term]:
     }
 
 
-def _off_current(sit: Situation, p: Prepared, net: _Network, hot: Floats) -> Term:
-    tj = Term("TJ hot", hot, "°C", Evidence.DERIVED, "hottest junction, just turned off", looked_up=("RthJA", "TJ"))
+def _off_current(sit: Situation, p: Prepared, net: _Network, tj: Term) -> Term:
     symbols = ("ICBO",) if not p.darlington.all() else ("ICEO",)
-    with np.errstate(all="ignore"):
-        values = leakage.leakage_most(float(sit.vs_max.values), hot, p.leak_v, p.leak_t, p.leak_i, p.vceo)
+    hot = tj.values
+    values = _quiet(leakage.leakage_most, float(sit.vs_max.values), hot, p.leak_v, p.leak_t, p.leak_i, p.vceo)
     leak = leakage.leakage_hot.traced(values, p.leak_grade, symbols, V=sit.vs_max, TJ=tj)
     into_base = Term("I base", leak.values + sit.off_leak, "A", leak.evidence, "leakage into the base node",
                      inputs={"leak": leak, "driver": given("driver leakage", sit.off_leak, "A")})  # fmt: skip
@@ -374,10 +378,6 @@ def _least_current(sit: Situation, vce_on: Term) -> Term:
         return sit.ic_min_constant
     assert sit.r_max is not None
     return load.load_current(symbol="IC min", meaning="lowest load current", VS=sit.vs_min, VCE=vce_on, R=sit.r_max)
-
-
-def _typical(p: Prepared) -> bool:
-    return bool((p.gain.grades >= Evidence.TYPICAL).any() or (p.gain_low.grades >= Evidence.TYPICAL).any())
 
 
 def _ratio(a: Floats, b: Floats) -> Floats:
