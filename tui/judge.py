@@ -31,10 +31,9 @@ def judge(
     progress: Callable[[float], None] = lambda share: None,
 ) -> Outcome | None:
     """Read a draft and rank the shelf by it; None once `stopped` says that nobody waits for it any more."""
-    from importers.requirement_file import parse_fields
-
     from engine.rank import BLOCK, Cancelled, rank
     from engine.requirement import RequirementError
+    from importers.requirement_file import parse_fields
 
     try:
         requirement = parse_fields(draft.duty, dict(draft.texts), title=draft.title)

@@ -32,6 +32,9 @@ def columns(ranking: Ranking, marked: Callable[[str], bool]) -> list[Column]:
     rank_width = max(len(str(len(shelf))), 2)
     name_width = min(max((len(str(name)) for name in shelf.names[ranking.order[:2000]]), default=6), 14)
     names = [check.name for check in ranking.checks]
+    verdict_width = max(
+        len(verdict.words) for verdict in Verdict if ranking.count(verdict) or verdict == Verdict.CANNOT_SAY
+    )
     nothing = np.full(len(shelf), np.nan)
     rb, rbe = network.get("rb", nothing), network.get("rbe", nothing)
     tj = bounds.get("tj_max", nothing)
@@ -39,7 +42,11 @@ def columns(ranking: Ranking, marked: Callable[[str], bool]) -> list[Column]:
         Column("", 1, lambda row: "*" if marked(str(shelf.names[row])) else ""),
         Column("#", rank_width, lambda row: str(place[row]), right=True),
         Column("type", name_width, lambda row: str(shelf.names[row])),
-        Column("verdict", 16, lambda row: Verdict(int(ranking.verdict[row])).words),
+        Column(
+            "verdict",
+            verdict_width,
+            lambda row: Verdict(int(ranking.verdict[row])).words,
+        ),
         Column("room", 5, lambda row: headroom(float(ranking.headroom[row])), right=True),
         Column("worst check", 0, lambda row: names[int(ranking.worst[row])]),
         Column("RB", 5, lambda row: ohms(float(rb[row])), right=True),

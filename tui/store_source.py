@@ -61,6 +61,7 @@ class StoreSource:
         from db.shortlists import Entry
         from engine.explain import explain
         from importers.requirement_file import to_toml
+        from reports.program import program
 
         entries = []
         for rank, row in enumerate(rows, 1):
@@ -69,17 +70,5 @@ class StoreSource:
         title = ranking.requirement.title or "without a title"
         with self._open() as store:
             requirement = store.save_requirement(title, to_toml(ranking.requirement, weights))
-            number = store.save_shortlist(
-                requirement, ranking.policy, program_name(), ranking.shelf.fingerprint, entries
-            )
+            number = store.save_shortlist(requirement, ranking.policy, program(), ranking.shelf.fingerprint, entries)
         return f"Saved as shortlist {number} in {self.path.name}: {len(entries)} parts"
-
-
-def program_name() -> str:
-    """The program with its version, as shortlists keep it."""
-    from importlib.metadata import PackageNotFoundError, version
-
-    try:
-        return f"betafloor {version('betafloor')}"
-    except PackageNotFoundError:
-        return "betafloor, run from its sources"

@@ -7,6 +7,10 @@ from engine.requirement import Requirement
 from engine.shelf import Floats, Shelf
 
 NAMES = ("base drive", "collector–emitter voltage", "junction temperature")
+BOUNDS = (
+    "vce_on_max", "ic_on_max", "ic_on_min", "ib_on_min", "ib_on_max", "drive_current_max", "forced_beta_max", "power_max",
+    "tj_max", "ic_off_max", "vce_off_max", "t_on_max", "t_off_max",
+)  # fmt: skip
 
 
 def ranking_of(shelf: Shelf, requirement: Requirement) -> Ranking:
@@ -22,7 +26,9 @@ def ranking_of(shelf: Shelf, requirement: Requirement) -> Ranking:
     score = np.where(verdict <= 1, 0.71, 0.0)
     order = np.lexsort((np.arange(n), verdict))
     network = {"rb": np.full(n, 4700.0), "rbe": np.where(verdict == 0, 47e3, np.nan)}
-    bounds = {"tj_max": np.full(n, 71.4), "ic_on_max": np.full(n, 0.089), "forced_beta_max": np.full(n, 31.0)}
+    network |= {"rb_low": np.full(n, 1200.0), "rb_high": np.full(n, 3300.0)}
+    bounds = {name: np.full(n, 1.0) for name in BOUNDS}
+    bounds |= {"tj_max": np.full(n, 71.4), "ic_on_max": np.full(n, 0.089), "forced_beta_max": np.full(n, 31.0)}
     worst = np.array([i % len(NAMES) for i in range(n)], dtype=np.int16)
     return Ranking(
         requirement,
@@ -63,7 +69,7 @@ def explanation_of(shelf: Shelf, row: int) -> Explanation:
         says="fails: base drive: IB min 408 µA, must be at least IB needed 658 µA (×0.62)",
         network={"rb": 4700.0, "rbe": 47e3, "rb_low": 1200.0, "rb_high": 3300.0, "tolerance": 0.05},
         network_says="RB 4.7 kΩ, RBE 47 kΩ (E24, ±5 %); window of RB 1.2 kΩ to 3.3 kΩ",
-        bounds={"ic_on_max": 0.089, "forced_beta_max": 31.0, "tj_max": 71.4},
+        bounds=dict.fromkeys(BOUNDS, 1.0) | {"ic_on_max": 0.089, "forced_beta_max": 31.0, "tj_max": 71.4},
         checks=checks,
         cautions=("A transistor mostly fails short: the load then stays on.",),
         notes=("off current: 1 % of the load current taken as the limit, as none is stated",),

@@ -8,6 +8,7 @@ from typing import TypeVar
 from textual.app import App
 from textual.pilot import Pilot as TextualPilot
 from textual.widget import Widget
+from textual.widgets import Input
 
 from engine.part import Limit, Part
 from engine.ranking import Ranking
@@ -162,6 +163,11 @@ class Pilot:
     async def write(self, text: str) -> None:
         """Write a text, key by key."""
         await self.press(*(_KEYS.get(c, c) for c in text))
+
+    async def answer(self, text: str) -> None:
+        """Put a text into the question that is open and answer it."""
+        self.app.screen.query_one(Input).value = text
+        await self.press("enter")
 
     @property
     def text(self) -> str:

@@ -84,8 +84,8 @@ def test_ticks_carry_si_prefixes(value: float, words: str) -> None:
 @pytest.mark.parametrize("width", [8, 20, 40])
 @pytest.mark.parametrize("plain", [True, False])
 def test_a_bar_crosses_the_stroke_only_where_there_is_headroom(width: int, plain: bool) -> None:
-    full = "#" if plain else "█"
-    stroke = "|" if plain else "│"
+    full = "#" if plain else "━"
+    stroke = "|" if plain else "┃"
     for headroom in (0.1, 0.5, 0.9, 0.999):
         before, after = bar(headroom, width, plain=plain).split(stroke)
         assert not after.strip() and before.endswith(" ")
@@ -96,5 +96,5 @@ def test_a_bar_crosses_the_stroke_only_where_there_is_headroom(width: int, plain
 
 
 def test_bars_grow_with_the_headroom() -> None:
-    lengths = [bar(h, 40).count("█") for h in (0.3, 0.6, 1.5, 3.0, 6.0, 12.0)]
+    lengths = [bar(h, 40).count("━") for h in (0.3, 0.6, 1.5, 3.0, 6.0, 12.0)]
     assert lengths == sorted(lengths) and len(set(lengths)) == len(lengths)

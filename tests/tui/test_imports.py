@@ -45,7 +45,8 @@ seen, painted = [], []
 app = BetafloorApp(Source())
 async def main():
     async with app.run_test() as pilot:
-        await app.workers.wait_for_complete()
+        while not painted:
+            await pilot.pause()
 asyncio.run(main())
 assert seen == [[]], seen
 assert painted == [True]

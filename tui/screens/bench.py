@@ -14,7 +14,7 @@ from ..commands import bindings_of
 from ..messages import Progress, Ranked, Refused
 from ..state import Draft, Session
 from ..widgets.cells import wrap
-from ..widgets.form import Form
+from ..widgets.form import Form, meaning_of
 from ..widgets.lines_view import LinesView
 from ..widgets.text_view import TextView
 from .base import Room
@@ -40,9 +40,10 @@ class BenchScreen(Room):
     DEFAULT_CSS = """
     BenchScreen #panes { height: 1fr; }
     BenchScreen #left, BenchScreen #right { width: 1fr; height: 1fr; }
+    BenchScreen.-narrow #meaning { height: 2; }
     BenchScreen.-wide #left { width: 41; border-right: solid $primary; }
     BenchScreen.-narrow .-away { display: none; }
-    BenchScreen #meaning { height: 2; color: $text-muted; padding: 0 1; }
+    BenchScreen #meaning { height: 3; color: $text-muted; padding: 0 1; }
     BenchScreen #standing { height: auto; min-height: 1; padding: 0 1; text-style: bold; }
     BenchScreen #reasons { height: 7; border-top: solid $primary; }
     BenchScreen.-wide #reasons { height: 12; }
@@ -236,8 +237,8 @@ class BenchScreen(Room):
 
     @on(Form.Entered)
     def tell_meaning(self, message: Form.Entered) -> None:
-        lines = wrap(message.field.meaning, max(self.query_one("#meaning").size.width - 2, 20))
-        self.query_one("#meaning", Static).update("\n".join(lines[:2]))
+        lines = wrap(meaning_of(message.field), max(self.query_one("#meaning").size.width - 2, 20))
+        self.query_one("#meaning", Static).update("\n".join(lines[:3]))
 
     def action_verdicts(self) -> None:
         """All parts, or those that fit."""

@@ -12,7 +12,7 @@ WORDS = (
     ("fits on typicals", "every check passes, but a typical value stands among the figures"),
     ("cannot say", "a figure that a check needs is not on file; the reasons name it"),
     ("fails", "a check fails at some combination the requirement allows"),
-    ("headroom", "limit over demand: ×1 is exactly at the limit, below it fails"),
+    ("headroom", "limit over demand (room): ×1 is exactly at the limit, below it fails"),
 )
 ROOMS = {
     "shelf": "Shelf", "bench": "Bench", "part": "Part", "sheet": "Calculation sheet", "shortlist": "Shortlist",

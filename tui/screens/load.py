@@ -138,12 +138,12 @@ async def ask_and_write(
 ) -> None:
     """Ask for a file name, confirm where a file exists, write it whole, and say so."""
 
-    def take(answer: str | None) -> None:
+    async def take(answer: str | None) -> None:
         if answer is None:
             return
         path = Path(answer).expanduser()
         try:
-            write_whole(path, content(path))
+            await asyncio.to_thread(lambda: write_whole(path, content(path)))
         except OSError as error:
             desk.tell(why(error), title="Not written", wrong=True)
             return

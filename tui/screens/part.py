@@ -37,7 +37,7 @@ class PartScreen(Room):
     PartScreen #sections { height: 1fr; }
     PartScreen #limits-pane, PartScreen #right { width: 1fr; height: 1fr; }
     PartScreen #gain, PartScreen #checks { height: 1fr; }
-    PartScreen.-wide #limits-pane { width: 60; border-right: solid $primary; }
+    PartScreen.-wide #limits-pane { width: 64; border-right: solid $primary; }
     PartScreen.-wide #checks { border-top: solid $primary; }
     PartScreen #limit { height: 3; color: $text-muted; padding: 0 1; }
     PartScreen #tabs { height: 1; padding: 0 1; }

@@ -7,7 +7,6 @@ from textual.app import ComposeResult
 
 from ..commands import bindings_of
 from ..state import Session
-from ..widgets.cells import wrap
 from ..widgets.lines_of_screen import TitleLine
 from ..widgets.text_view import TextView
 from .base import Room
@@ -49,8 +48,7 @@ class SheetScreen(Room):
 
     def _fill(self, sheet: "Sheet") -> None:
         self._sheet = sheet
-        lines = sheet.text.splitlines()
-        self.query_one(TextView).show(lambda width: [part for line in lines for part in folded(line, width)])
+        self.query_one(TextView).show(sheet.lines)
         stale = "STALE, of the last sound requirement · " if self.session.stale else ""
         demo = "invented demo data" if self.session.demo else ""
         self.query_one(TitleLine).say(f"{stale}{demo}", f"calculation sheet · {sheet.part}")
@@ -68,10 +66,3 @@ class SheetScreen(Room):
         if sheet is not None:
             name = f"{file_stem(sheet.part)}-sheet.md"
             await ask_and_write(self.desk, "Write the sheet as", name, SHEET_ENDINGS, sheet.content)
-
-
-def folded(line: str, width: int) -> list[str]:
-    """A line of the sheet in lines of `width` cells; what goes on is set in as far as the line was."""
-    lead = line[: len(line) - len(line.lstrip(" -*|"))]
-    first, *rest = wrap(line[len(lead) :], max(width - len(lead), 20))
-    return [lead + first, *(" " * len(lead) + one for one in rest)]

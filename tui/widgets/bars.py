@@ -24,7 +24,7 @@ def headroom_word(headroom: float | None, status: str) -> str:
 
 def bar(headroom: float | None, width: int, *, plain: bool = False) -> str:
     """A bar that grows with the headroom; the upright stroke is a headroom of one, exactly at the limit."""
-    full, stroke = ("#", "|") if plain else ("█", "│")
+    full, stroke = ("#", "|") if plain else ("━", "┃")
     at_limit = _place(1.0, width)
     filled = 0 if headroom is None or math.isnan(headroom) else _place(headroom, width)
     if headroom is not None and headroom < 1:

@@ -13,7 +13,7 @@ def clean(text: str) -> str:
 def fit(text: str, width: int, *, right: bool = False) -> str:
     """`text` in exactly `width` cells, cut with an ellipsis where it is too long."""
     text = clean(text)
-    size = cell_len(text)
+    size = len(text) if text.isascii() else cell_len(text)
     if size > width:
         return set_cell_size(text, max(width - 1, 0)) + ELLIPSIS[:width]
     blank = " " * (width - size)

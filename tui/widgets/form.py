@@ -17,7 +17,7 @@ from .cells import fit, wrap
 if TYPE_CHECKING:
     from engine.requirement import Field, Problem
 
-_LABEL, _UNIT = 20, 4  # cells
+_LABEL, _INPUT, _UNIT = 20, 34, 4  # cells; of the field itself the most
 UNSTATED = "–"
 
 
@@ -72,7 +72,7 @@ class WordInput(Widget, can_focus=True):
         self.action_turn(1)
 
     def render(self) -> Content:
-        word = self.value or (f"{self.default} (default)" if self.default else UNSTATED)
+        word = self.value or (f"({self.default})" if self.default else UNSTATED)
         return Content(f"‹ {fit(word, max(self.size.width - 4, 1)).rstrip()} ›")
 
 
@@ -81,7 +81,7 @@ class FieldRow(Widget):
 
     DEFAULT_CSS = f"""
     FieldRow {{ height: 1; }}
-    FieldRow > Input, FieldRow > WordInput {{ margin: 0 {_UNIT + 1} 0 {_LABEL + 2}; width: 1fr; }}
+    FieldRow > Input, FieldRow > WordInput {{ margin: 0 {_UNIT + 1} 0 {_LABEL + 2}; width: 1fr; max-width: {_INPUT}; }}
     FieldRow.-hidden {{ display: none; }}
     """
 
@@ -94,7 +94,7 @@ class FieldRow(Widget):
         if field.words and field.choices:
             self.input = WordInput(field.choices, default)
         else:
-            placeholder = f"{default} (default)" if default else "needed" if field.required else ""
+            placeholder = f"({default})" if default else "needed" if field.required else ""
             self.input = Input(placeholder=placeholder, compact=True, select_on_focus=False)
 
     def compose(self) -> ComposeResult:
@@ -133,7 +133,7 @@ class FieldRow(Widget):
     def render(self) -> Content:
         sign = "▶" if self.input.has_focus else "!" if self.problem else " "
         star = "*" if self.field.required else " "
-        gap = " " * max(self.size.width - _LABEL - 2 - _UNIT - 1, 0)
+        gap = " " * min(max(self.size.width - _LABEL - 2 - _UNIT - 1, 0), _INPUT)
         first = f"{sign}{star}{fit(self.field.label, _LABEL - 1)} {gap} {fit(self.field.unit, _UNIT)}"
         return Content("\n".join([first, *(f"   ! {line}" if i == 0 else f"     {line}"
                                            for i, line in enumerate(self._problem_lines()))]))  # fmt: skip
@@ -187,6 +187,9 @@ class Form(VerticalScroll, can_focus=False):
         self.rows = [FieldRow(field) for field in fields]
         await self.remove_children()
         await self.mount_all(self.compose())
+
+    def on_mount(self) -> None:
+        self._show_what_is_asked()
 
     # --- texts
 
@@ -244,6 +247,12 @@ class Form(VerticalScroll, can_focus=False):
         here = next((i for i, row in enumerate(seen) if row.input.has_focus), 0)
         row = seen[min(max(here + by, 0), len(seen) - 1)]
         self.screen.set_focus(row.input)
+
+
+def meaning_of(field: "Field") -> str:
+    """What a field means, with its default: what stands in brackets holds where nothing is written."""
+    default = default_text(field)
+    return f"{field.meaning}. Where nothing is written: {default}" if default else field.meaning
 
 
 def default_text(field: "Field") -> str:

@@ -25,9 +25,8 @@ class TitleLine(Widget):
         self.refresh()
 
     def render(self) -> Content:
-        left = f" Betafloor · {self.screen_name}"
-        room = self.size.width - len(left) - 2
-        facts = fit(self.facts, max(room, 0), right=True)
+        facts = fit(self.facts, min(len(self.facts), max(self.size.width - 2, 0)))
+        left = fit(f" Betafloor · {self.screen_name}", max(self.size.width - len(facts) - 2, 0))
         return Content(f"{left} {facts} ")
 
 

@@ -5,7 +5,6 @@ from dataclasses import dataclass
 from typing import ClassVar, Protocol, SupportsInt
 
 from rich.segment import Segment
-from rich.style import Style
 from textual import events
 from textual.binding import Binding, BindingType
 from textual.geometry import Size
@@ -15,7 +14,7 @@ from textual.strip import Strip
 
 from .cells import fit
 
-LEAST_ELASTIC = 10  # cells that the elastic column keeps
+LEAST_ELASTIC = 11  # cells that the elastic column keeps
 
 
 class Rows(Protocol):
@@ -138,14 +137,16 @@ class LinesView(ScrollView, can_focus=True):
         return self._strip("▶ " if here else "  ", [c.cell(row) for c, _ in self._widths()], look)
 
     def _strip(self, sign: str, cells: list[str], look: str) -> Strip:
-        shown = zip(cells, self._widths(), strict=True)
+        widths = self._widths()
+        shown = zip(cells, widths, strict=True)
         line = sign + " ".join(fit(cell, width, right=column.right) for cell, (column, width) in shown)
-        return self._plain(line, look)
-
-    def _plain(self, line: str, look: str = "") -> Strip:
-        width = self.scrollable_content_region.width
         style = self.get_component_rich_style(look) if look else self.rich_style
-        return Strip([Segment(fit(line, width), style if isinstance(style, Style) else None)], width)
+        known = len(sign) + sum(width for _, width in widths) + len(widths) - 1
+        return Strip([Segment(line, style)], known).adjust_cell_length(self.scrollable_content_region.width, style)
+
+    def _plain(self, line: str) -> Strip:
+        width = self.scrollable_content_region.width
+        return Strip([Segment(fit(line, width), self.rich_style)], width)
 
     # --- the cursor
 
