@@ -1,4 +1,4 @@
-"""How desirable a part is among those that fit: Derringer and Suich's desirabilities and the Pareto front.
+"""How desirable a part is among those that fit: Derringer and Suich's desirabilities.
 
 Source: G. Derringer, R. Suich, J. Quality Technology 12(4) (1980) 214; NIST e-Handbook 5.5.3.2.2.
 """
@@ -81,21 +81,3 @@ def criteria(
         "cost": np.maximum(smaller_is_better(cheap, -2.0, 1.5), LEAST),
         "evidence": np.maximum(1.0 - 0.2 * evidence.astype(np.float64), LEAST),
     }
-
-
-def pareto_front(wanted: Floats) -> NDArray[np.bool_]:
-    """Which rows nothing dominates, larger being better in every column; equal rows both stay. (n, c) → (n,).
-
-    Rows in order of falling sum: a row can only be dominated by one before it.
-    """
-    n = len(wanted)
-    order = np.argsort(-wanted.sum(axis=1), kind="stable")
-    front = np.empty((0, wanted.shape[1]))
-    on_front = np.zeros(n, dtype=bool)
-    for row in order:
-        candidate = wanted[row]
-        dominated = ((front >= candidate).all(axis=1) & (front > candidate).any(axis=1)).any()
-        if not dominated:
-            on_front[row] = True
-            front = np.vstack([front, candidate])
-    return on_front

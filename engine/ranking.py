@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from .evidence import Grades
+from .pareto import pareto_front
 from .requirement import Requirement
 from .shelf import Shelf
 
@@ -75,8 +76,6 @@ class Ranking:
     @cached_property
     def pareto(self) -> NDArray[np.bool_]:
         """Parts that fit and that no other fitting part beats in one criterion without losing in another."""
-        from .desirability import pareto_front
-
         fitting = np.flatnonzero(self.verdict <= Verdict.FITS_ON_TYPICALS)
         front = np.zeros(len(self.verdict), dtype=bool)
         front[fitting] = pareto_front(np.column_stack([d[fitting] for d in self.desirability.values()]))

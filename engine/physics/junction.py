@@ -63,15 +63,15 @@ def junction_floor(ic: Floats, t: Floats, v0: Floats, i0: Floats) -> Floats:
     The exponential law at 25 °C, then VBE(T) at constant current (source "vbe floor").
     """
     at_room = v0 + float(thermal_voltage(ROOM)) * np.log(ic / i0)
-    return _over_temperature(at_room, t)
+    return over_temperature(at_room, t)
 
 
 def current_ceiling(vbe: Floats, t: Floats, v0: Floats, i0: Floats) -> Floats:
     """Highest collector current at base–emitter voltage `vbe` and `t` °C; the inverse of `junction_floor`. [A]"""
-    return i0 * np.exp((vbe - _over_temperature(v0, t)) / thermal_voltage(t))
+    return i0 * np.exp((vbe - over_temperature(v0, t)) / thermal_voltage(t))
 
 
-def _over_temperature(v: Floats, t: Floats) -> Floats:
+def over_temperature(v: Floats, t: Floats) -> Floats:
     """VBE at constant current moved from 25 °C to `t`; the unkind band gap makes it fall fastest. [V]"""
     ratio = (t + ZERO_CELSIUS) / ROOM_KELVIN
     moved = v * ratio + EG_HIGH * (1 - ratio) - XTI * thermal_voltage(t) * np.log(ratio)

@@ -5,6 +5,7 @@ from numpy.typing import NDArray
 
 from ..formula import formula
 from .constants import ZERO_CELSIUS
+from .junction import over_temperature
 
 Floats = NDArray[np.float64]
 
@@ -70,9 +71,7 @@ def off_current(I_leak: Floats, I_floor: Floats, VB: Floats, V_floor: Floats, VT
          words="V(floor)·T/T0 + EG·(1 − T/T0) − 3·VT·ln(T/T0)", source="vbe floor")  # fmt: skip
 def floor_hot(V_floor: Floats, TJ: Floats) -> Floats:
     """The floor moved to the junction temperature. [V]"""
-    from .junction import _over_temperature
-
-    return _over_temperature(V_floor, TJ)
+    return over_temperature(V_floor, TJ)
 
 
 def base_voltage_allowed(i_off: float, leak: Floats, v_floor: Floats, i_floor: Floats, vt: Floats) -> Floats:
