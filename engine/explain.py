@@ -1,19 +1,20 @@
 """The full explanation of one part, written from the arrays that judged it."""
 
 import math
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping, Sequence
 
 import numpy as np
 
 from . import show
 from .check import Outcome
 from .duty import duties
+from .duty.base import Judged
 from .evidence import Evidence
 from .formula import Term
 from .physics.sources import SOURCES
 from .policy import POLICIES
-from .rank import decide, prepared
-from .ranking import CheckExplanation, Explanation, Status, Step, Verdict
+from .rank import BLOCK, decide, prepared
+from .ranking import CheckColumn, CheckExplanation, Explanation, Status, Step, Verdict
 from .requirement import Requirement
 from .shelf import Shelf
 
@@ -25,55 +26,99 @@ def explain(
     *,
     network: Mapping[str, float] | None = None,
 ) -> Explanation:
-    """Judge the part at `row` again and tell every figure."""
-    duty = duties()[requirement.duty]
-    one = slice(row, row + 1)
-    judged = duty.judge(requirement, prepared(shelf).take(one), shelf.take(one), network)
-    verdict, evidence, worst, _ = decide(tuple(outcome.column() for outcome in judged.outcomes))
-    checks = tuple(_check(outcome) for outcome in judged.outcomes)
-    chosen = {name: _number(column[0]) for name, column in judged.network.items()}
-    chosen["tolerance"] = _number(requirement.number("resistors.tolerance"))
-    policy = requirement.word("choice.derating") or "none"
-    return Explanation(
-        part=str(shelf.names[row]),
-        structure=shelf.structure_word(row),
-        package=str(shelf.package[row]),
-        verdict=Verdict(int(verdict[0])).words,
-        evidence=Evidence(int(evidence[0])).word,
-        says=_verdict_sentence(Verdict(int(verdict[0])), checks, int(worst[0])),
-        network=chosen,
-        network_says=_network_sentence(chosen, requirement, chosen_here=network is None),
-        bounds={name: _number(column[0]) for name, column in judged.bounds.items()},
-        checks=checks,
-        cautions=duty.cautions(requirement),
-        notes=(*requirement.notes, f"derating policy {policy}: {POLICIES[policy].source}"),
-        sources=_sources(judged.outcomes),
-    )
+    """Judge the part at `row` again and tell every figure, with its working."""
+    (told,) = explain_rows(requirement, shelf, [row], network=network, working=True)
+    return told
+
+
+def explain_rows(
+    requirement: Requirement,
+    shelf: Shelf,
+    rows: Sequence[int],
+    *,
+    network: Mapping[str, float] | None = None,
+    working: bool = False,
+) -> Iterator[Explanation]:
+    """Judge the parts at `rows` again and tell of each in turn; the steps of the working only where asked."""
+    for start in range(0, len(rows), BLOCK):
+        some = np.asarray(rows[start : start + BLOCK], dtype=np.intp)
+        duty = duties()[requirement.duty]
+        judged = duty.judge(requirement, prepared(shelf).take(some), shelf.take(some), network)
+        teller = _Teller(requirement, judged, duty.cautions(requirement), chosen_here=network is None, working=working)
+        for i, row in enumerate(some):
+            yield teller.tell(i, str(shelf.names[row]), shelf.structure_word(int(row)), str(shelf.package[row]))
+
+
+class _Teller:
+    """Tells of the parts of one judgement, by their place in it."""
+
+    def __init__(
+        self, req: Requirement, judged: Judged, cautions: tuple[str, ...], *, chosen_here: bool, working: bool
+    ) -> None:
+        self.req, self.judged, self.cautions = req, judged, cautions
+        self.chosen_here, self.working = chosen_here, working
+        self.columns = tuple(outcome.column() for outcome in judged.outcomes)
+        self.verdict, self.evidence, self.worst, _ = decide(self.columns)
+        policy = req.word("choice.derating") or "none"
+        self.notes = (*req.notes, f"derating policy {policy}: {POLICIES[policy].source}")
+        self.sources = _sources(judged.outcomes)
+
+    def tell(self, i: int, name: str, structure: str, package: str) -> Explanation:
+        """Everything there is to say about the part at place `i`."""
+        checks = tuple(
+            self._check(outcome, column, i) for outcome, column in zip(self.judged.outcomes, self.columns, strict=True)
+        )
+        verdict = Verdict(int(self.verdict[i]))
+        chosen = {key: _number(column[i]) for key, column in self.judged.network.items()}
+        chosen["tolerance"] = _number(self.req.number("resistors.tolerance"))
+        return Explanation(
+            part=name,
+            structure=structure,
+            package=package,
+            verdict=verdict.words,
+            evidence=Evidence(int(self.evidence[i])).word,
+            says=_verdict_sentence(verdict, checks, int(self.worst[i])),
+            network=chosen,
+            network_says=_network_sentence(chosen, self.req, chosen_here=self.chosen_here),
+            bounds={key: _number(column[i]) for key, column in self.judged.bounds.items()},
+            checks=checks,
+            cautions=self.cautions,
+            notes=self.notes,
+            sources=self.sources,
+        )
+
+    def _check(self, outcome: Outcome, column: CheckColumn, i: int) -> CheckExplanation:
+        status = Status(int(column.status[i]))
+        value, limit, headroom = float(column.value[i]), float(column.limit[i]), float(column.headroom[i])
+        compared = outcome.compared
+        missing = missing_symbols(i, compared.demand, compared.limit) if status == Status.UNKNOWN else ()
+        return CheckExplanation(
+            name=column.name,
+            question=column.question,
+            status=status.word,
+            evidence=Evidence(int(column.evidence[i])).word,
+            value=_number(value),
+            limit=_number(limit),
+            unit=column.unit,
+            headroom=_number(headroom),
+            missing=missing,
+            says=_sentence(outcome, value, limit, headroom, status, missing),
+            steps=tuple(_steps(i, compared.demand, compared.limit)) if self.working else (),
+        )
 
 
 def _number(value: float) -> float | None:
     return None if not math.isfinite(value) else float(value)
 
 
-def _check(outcome: Outcome) -> CheckExplanation:
-    column = outcome.column()
-    status = Status(int(column.status[0]))
-    value, limit, headroom = float(column.value[0]), float(column.limit[0]), float(column.headroom[0])
-    compared = outcome.compared
-    missing = missing_symbols(compared.demand, compared.limit) if status == Status.UNKNOWN else ()
-    return CheckExplanation(
-        name=column.name,
-        question=column.question,
-        status=status.word,
-        evidence=Evidence(int(column.evidence[0])).word,
-        value=_number(value),
-        limit=_number(limit),
-        unit=column.unit,
-        headroom=_number(headroom),
-        missing=missing,
-        says=_sentence(outcome, value, limit, headroom, status, missing),
-        steps=tuple(_steps(compared.demand, compared.limit)),
-    )
+def _at(term: Term, i: int) -> float:
+    """A term's value for the part at place `i`; a term of the requirement has one for all."""
+    return float(term.values if term.values.ndim == 0 else term.values[i])
+
+
+def _word(term: Term, i: int) -> str:
+    grades = term.grades
+    return Evidence(int(grades if grades.ndim == 0 else grades[i])).word
 
 
 def _sentence(
@@ -97,50 +142,45 @@ def _sentence(
     return f"{demand.symbol} {show.quantity(value, unit)}, must be {relation} {allowed.symbol} {show.quantity(limit, unit)}{tail}"
 
 
-def missing_symbols(*terms: Term) -> tuple[str, ...]:
-    """Symbols to look up: where a value first went missing on the way to these terms."""
+def missing_symbols(i: int, *terms: Term) -> tuple[str, ...]:
+    """Symbols to look up: where the value of the part at place `i` first went missing on the way to these terms."""
     found: dict[str, None] = {}
     for term in terms:
         for step in term.walk():
-            silent = bool(np.isnan(np.ravel(step.values)[0]))
-            caused = any(np.isnan(np.ravel(cause.values)[0]) for cause in step.inputs.values())
-            if silent and not caused:
+            caused = any(math.isnan(_at(cause, i)) for cause in step.inputs.values())
+            if math.isnan(_at(step, i)) and not caused:
                 found.update(dict.fromkeys(step.looked_up))
     return tuple(found)
 
 
-def _steps(*terms: Term) -> list[Step]:
+def _steps(i: int, *terms: Term) -> list[Step]:
     steps, seen = [], set()
     for term in terms:
         for one in term.walk():
-            key = (one.symbol, float(np.ravel(one.values)[0]))
-            if id(one) in seen or key in seen or not one.symbol:
+            key = (one.symbol, _at(one, i))
+            if not one.symbol or key in seen:
                 continue
-            seen |= {id(one), key}
-            steps.append(_step(one))
+            seen.add(key)
+            steps.append(_step(one, i))
     return steps
 
 
-def _step(term: Term) -> Step:
-    value = float(np.ravel(term.values)[0])
-    evidence = Evidence(int(np.ravel(term.grades)[0])).word
+def _step(term: Term, i: int) -> Step:
+    value = _at(term, i)
+    evidence = _word(term, i)
     if term.source in ("requirement", "chosen") and not math.isnan(value):
         evidence = "stated" if term.source == "requirement" else "chosen"
     relation = numbers = ""
     source = term.source
+    figures = {name: show.quantity(_at(one, i), one.unit) for name, one in term.inputs.items()}
+    names = {name: one.symbol for name, one in term.inputs.items()}
+    listed = ", ".join(f"{names[name]} = {figures[name]}" for name in names)
     if term.formula is not None:
-        names = {name: one.symbol for name, one in term.inputs.items()}
-        figures = {name: show.quantity(float(np.ravel(one.values)[0]), one.unit) for name, one in term.inputs.items()}
         relation = term.formula.relation(names)
-        text = term.formula.text
-        numbers = term.formula.relation(figures) if text else ", ".join(f"{names[n]} = {figures[n]}" for n in names)
+        numbers = term.formula.relation(figures) if term.formula.text else listed
         source = SOURCES[term.formula.source]
     elif term.inputs:
-        relation = term.source or term.meaning
-        numbers = ", ".join(
-            f"{one.symbol} = {show.quantity(float(np.ravel(one.values)[0]), one.unit)}" for one in term.inputs.values()
-        )
-        source = ""
+        relation, numbers, source = term.source or term.meaning, listed, ""
     return Step(term.symbol, term.meaning, relation, numbers, show.quantity(value, term.unit), evidence, source)
 
 

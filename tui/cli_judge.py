@@ -67,9 +67,9 @@ def _ranked(ranking: "Ranking", rows: list[int], form: str) -> str:
     from reports.ranking_json import ranking_object
 
     if form == "json":
-        from engine.explain import explain
+        from engine.explain import explain_rows
 
-        told = [(row, explain(ranking.requirement, ranking.shelf, row)) for row in rows]
+        told = list(zip(rows, explain_rows(ranking.requirement, ranking.shelf, rows), strict=True))
         return json.dumps(ranking_object(ranking, told), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
     if form == "csv":
         return ranking_table.csv_table(ranking, rows)
