@@ -157,11 +157,11 @@ def _name_curve(cells: list[list[str]], paper: _Paper, one: Series, number: int)
     known = [(x, y) for x, y in _pairs(one) if not math.isnan(y)]
     if not known:
         return
-    for share in (0.08, 0.3, 0.55, 0.8):
-        x, y = known[min(int(share * len(known)) + number, len(known) - 1)]
-        column, row = round(paper.x(x)), round(paper.y(y))
-        for above in (-1, 1, -2, 2):
-            if _write(cells, row + above, column, one.name):
+    sides = (-1, -2, 1, 2) if number == 0 else (1, 2, -1, -2)  # the first from above, the others from below
+    for above in sides:
+        for share in (0.08, 0.3, 0.55, 0.8):
+            x, y = known[min(int(share * len(known)) + number, len(known) - 1)]
+            if _write(cells, round(paper.y(y)) + above, round(paper.x(x)), one.name):
                 return
 
 

@@ -43,7 +43,7 @@ class LinesView(ScrollView, can_focus=True):
     `show` takes columns and the order of the rows; the cells are asked for when they come into view.
     """
 
-    COMPONENT_CLASSES: ClassVar[set[str]] = {"lines--heading", "lines--cursor", "lines--marked"}
+    COMPONENT_CLASSES: ClassVar[set[str]] = {"lines--row", "lines--heading", "lines--cursor", "lines--marked"}
     DEFAULT_CSS = """
     LinesView { height: 1fr; scrollbar-size-vertical: 1; scrollbar-gutter: stable; overflow-x: hidden; }
     LinesView > .lines--heading { text-style: bold underline; color: $text-muted; }
@@ -133,14 +133,14 @@ class LinesView(ScrollView, can_focus=True):
             return self._plain(f"  {self.empty}" if place == 0 else "")
         row = int(self._order[place])
         here = place == self.cursor
-        look = "lines--cursor" if here else ("lines--marked" if self._emphasis(row) else "")
+        look = "lines--cursor" if here else "lines--marked" if self._emphasis(row) else "lines--row"
         return self._strip("▶ " if here else "  ", [c.cell(row) for c, _ in self._widths()], look)
 
     def _strip(self, sign: str, cells: list[str], look: str) -> Strip:
         widths = self._widths()
         shown = zip(cells, widths, strict=True)
         line = sign + " ".join(fit(cell, width, right=column.right) for cell, (column, width) in shown)
-        style = self.get_component_rich_style(look) if look else self.rich_style
+        style = self.get_component_rich_style(look)  # Textual remembers these, but works out `rich_style` each time
         known = len(sign) + sum(width for _, width in widths) + len(widths) - 1
         return Strip([Segment(line, style)], known).adjust_cell_length(self.scrollable_content_region.width, style)
 

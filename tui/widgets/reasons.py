@@ -18,7 +18,7 @@ def reasons(explained: "Explanation", width: int) -> list[str]:
     lines = [*wrap(head, width), *wrap(explained.network_says, width)]
     for check in sorted(explained.checks, key=_worst_first):
         room = headroom_word(check.headroom, check.status)
-        head, *rest = wrap(f"{check.name}: {without_headroom(check.says)}", width - _INDENT)
+        head, *rest = wrap(f"{check.name}: {without_headroom(check.says)}", max(width - _INDENT, 20))
         lines.append(f"{check.status:<7} {room:>9}  {head}")
         lines.extend(" " * _INDENT + line for line in rest)
     for caution in explained.cautions:
