@@ -42,6 +42,24 @@ class Term:
         """The same numbers under another name."""
         return replace(self, symbol=symbol, meaning=meaning or self.meaning)
 
+    def take(self, rows: NDArray[np.intp]) -> "Term":
+        """The numbers of some of the parts, without what they were made of."""
+        evidence = np.asarray(self.evidence, dtype=np.int8)
+        return Term(
+            self.symbol,
+            self.values if self.values.ndim == 0 else self.values[rows],
+            self.unit,
+            evidence if evidence.ndim == 0 else evidence[rows],
+            self.meaning,
+        )
+
+    def put(self, rows: NDArray[np.intp], other: "Term", n: int) -> "Term":
+        """These numbers for `n` parts, but those of `other` for the parts at `rows`."""
+        values = np.broadcast_to(self.values, n).copy()
+        evidence = np.broadcast_to(np.asarray(self.evidence, dtype=np.int8), n).copy()
+        values[rows], evidence[rows] = other.values, np.asarray(other.evidence, dtype=np.int8)
+        return replace(self, values=values, evidence=evidence)
+
     def walk(self) -> list["Term"]:
         """This term and all it was made of, each once, causes before effects."""
         seen: dict[int, Term] = {}

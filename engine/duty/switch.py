@@ -51,19 +51,36 @@ def _outcomes(sit: Situation, p: Prepared, shelf: Shelf, n: Needs, net: Network)
 
 def _best(sit: Situation, p: Prepared, shelf: Shelf, n: Needs) -> tuple[Network, tuple[Outcome, ...], Bounds]:
     """The chosen network; where only the network's own checks fail, stiffer ones are tried."""
-    net = plain = design(sit, p, n)
-    outcomes, b = _outcomes(sit, p, shelf, n, net)
+    plain = design(sit, p, n)
+    outcomes, b = _outcomes(sit, p, shelf, n, plain)
+    rows = np.flatnonzero(_only_network(outcomes))
+    if not len(rows):
+        return plain, outcomes, b
+    worst = _worst(outcomes)[rows]
+    net = _stiffer(sit, p.take(rows), shelf.take(rows), n.take(rows), plain.take(rows), worst)
+    if net is None:
+        return plain, outcomes, b
+    better = plain.put(rows, net)
+    return better, *_outcomes(sit, p, shelf, n, better)
+
+
+def _stiffer(
+    sit: Situation, p: Prepared, shelf: Shelf, n: Needs, plain: Network, worst: NDArray[np.int8]
+) -> Network | None:
+    """For parts that only their network fails: the first stiffer one that does better; None where none does."""
+    net, found = plain, False
+    still_open = np.ones(len(p), dtype=bool)
     for place in RETRIES:
-        open_question = _only_network(outcomes)
-        if not open_question.any():
+        if not still_open.any():
             break
         other = stiffest(sit, p, n, plain, place)
-        tried, _ = _outcomes(sit, p, shelf, n, net.where(open_question, other))
-        better = open_question & (_worst(tried) < _worst(outcomes))
-        if better.any():
-            net = net.where(better, other)
-            outcomes, b = _outcomes(sit, p, shelf, n, net)
-    return net, outcomes, b
+        outcomes, _ = _outcomes(sit, p, shelf, n, net.where(still_open, other))
+        better = still_open & (_worst(outcomes) < worst)
+        net = net.where(better, other)
+        worst = np.where(better, _worst(outcomes), worst)
+        still_open &= ~better | _only_network(outcomes)
+        found |= bool(better.any())
+    return net if found else None
 
 
 def _only_network(outcomes: tuple[Outcome, ...]) -> NDArray[np.bool_]:

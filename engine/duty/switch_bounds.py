@@ -1,7 +1,7 @@
 """What a switch with its network does at the worst: every bound as a traced term."""
 
 from collections.abc import Callable
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, fields, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -36,6 +36,10 @@ class CornerBounds:
     ib_min: Term
     forced_beta: Term
     v_room: Term  # VCE(sat) bound at 25 °C
+
+    def take(self, rows: NDArray[np.intp]) -> "CornerBounds":
+        """The corner for some of the parts."""
+        return CornerBounds(*(getattr(self, one.name).take(rows) for one in fields(self)))
 
 
 @dataclass(frozen=True, eq=False)
@@ -81,9 +85,13 @@ def bounds(sit: Situation, p: Prepared, n: Needs, net: Network) -> Bounds:
     guess = n.tj_guess
     heat = _heat(sit, p, n, names, corners, guess)
     hotter = (heat.tj.values > guess) & (heat.tj.values <= n.tj_limit)
-    if hotter.any():  # beyond the first guess and yet allowed: the limit is the unkind temperature then
-        guess = np.where(hotter, n.tj_limit, guess)
-        heat = _heat(sit, p, n, names, corners, guess)
+    if hotter.all():  # beyond the first guess and yet allowed: the limit is the unkind temperature then
+        heat = _heat(sit, p, n, names, corners, n.tj_limit)
+    elif hotter.any():
+        rows = np.flatnonzero(hotter)
+        some = tuple(corner.take(rows) for corner in corners)
+        net_there = _Network(sit, net.take(rows))
+        heat = heat.put(rows, _heat(sit, p.take(rows), n.take(rows), net_there, some, n.tj_limit[rows]), len(p))
     hottest = np.maximum(heat.tj.values, sit.number("ambient.max"))
     hot = Term("TJ hot", np.where(np.isinf(hottest), np.nan, hottest), "°C", heat.tj.evidence,
                "hottest junction, just turned off", "TJ max", inputs={"TJ": heat.tj})  # fmt: skip
@@ -176,6 +184,10 @@ class _Heat:
     t_on: Term
     t_off: Term
     edge_time: Term
+
+    def put(self, rows: NDArray[np.intp], other: "_Heat", n: int) -> "_Heat":
+        """This for `n` parts, but `other` for the parts at `rows`."""
+        return _Heat(*(getattr(self, one.name).put(rows, getattr(other, one.name), n) for one in fields(self)))
 
 
 def _heat(

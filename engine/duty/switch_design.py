@@ -39,7 +39,8 @@ class Need:
 
     def take(self, rows: NDArray[np.intp]) -> "Need":
         """The drive that some of the parts need."""
-        return replace(self, ib=self.ib[rows], vbe=self.vbe[rows])
+        cut = (self.gain_stated[rows], self.beta_allowed[rows], self.ib[rows], self.vbe[rows])
+        return Need(self.drive, self.witnesses.take(rows), *cut)
 
 
 @dataclass(frozen=True, eq=False)
@@ -57,7 +58,7 @@ class Needs:
     v_base_allowed: Floats
 
     def take(self, rows: NDArray[np.intp]) -> "Needs":
-        """What some of the parts need, for choosing their network: the witnesses stay behind."""
+        """What some of the parts need."""
         cut = {one.name: getattr(self, one.name) for one in fields(self)}
         for name, value in cut.items():
             if isinstance(value, np.ndarray):
@@ -80,6 +81,17 @@ class Network:
     rbe: Floats  # infinite: none
     rb_low: Floats  # the window that all corners leave for RB, with this RBE
     rb_high: Floats
+
+    def take(self, rows: NDArray[np.intp]) -> "Network":
+        """The network of some of the parts."""
+        return Network(self.rb[rows], self.rbe[rows], self.rb_low[rows], self.rb_high[rows])
+
+    def put(self, rows: NDArray[np.intp], other: "Network") -> "Network":
+        """This network, but `other` for the parts at `rows`."""
+        columns = [self.rb.copy(), self.rbe.copy(), self.rb_low.copy(), self.rb_high.copy()]
+        for mine, theirs in zip(columns, (other.rb, other.rbe, other.rb_low, other.rb_high), strict=True):
+            mine[rows] = theirs
+        return Network(*columns)
 
     def where(self, mask: NDArray[np.bool_], other: "Network") -> "Network":
         """This network, but `other` at `mask`."""
