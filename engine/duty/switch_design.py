@@ -118,7 +118,7 @@ def needs(sit: Situation, p: Prepared) -> Needs:
     corners = tuple(_need(sit, p, c, v_room, cold) for c in sit.corners)
     inrush = _inrush_need(sit, p, unstated, cold)
     guess = np.minimum(guess, _tj_guess(sit, p, _promised(corners) * hot + cold_rise(sit, p), tj_limit))
-    ic_least = lightest_load(sit, float(np.max(v_on)))
+    ic_least = lightest_load(sit, v_on)
     vbe_min = junction.vbe_hot.raw(ic_least, guess, p.floor_v, p.floor_i)
     leak = leakage.leakage_most(float(sit.vs_max.values), guess, p.leak_v, p.leak_t, p.leak_i, p.vceo)
     allowed = leakage.base_voltage_allowed(
@@ -225,13 +225,12 @@ def _tj_guess(sit: Situation, p: Prepared, v_on: Floats, tj_limit: Floats) -> Fl
     return np.maximum(np.minimum(guess, limit), hottest)
 
 
-def lightest_load(sit: Situation, v_on: float) -> float:
+def lightest_load(sit: Situation, v_on: Floats) -> Floats:
     """The lightest load, for the lowest VBE; a small share of the heaviest where the supply barely drives it. [A]"""
     if sit.ic_min_constant is not None:
-        return float(sit.ic_min_constant.values)
+        return sit.ic_min_constant.values
     assert sit.r_max is not None
-    least = (float(sit.vs_min.values) - v_on) / float(sit.r_max.values)
-    return max(least, 1e-3 * float(sit.ic_max.values))
+    return np.maximum((sit.vs_min.values - v_on) / sit.r_max.values, 1e-3 * sit.ic_max.values)
 
 
 def window(sit: Situation, p: Prepared, n: Needs, rbe: Floats) -> tuple[Floats, Floats]:
