@@ -13,7 +13,7 @@ from textual.screen import Screen
 
 from .commands import EVERYWHERE, bindings_of
 from .messages import ShelfOpened, ShelfTrouble
-from .screens.base import key_is_free
+from .screens.base import WIDE, key_is_free
 from .screens.shelf import ShelfScreen
 from .source import Source, SourceError
 from .state import Session
@@ -42,7 +42,7 @@ class BetafloorApp(App[int]):
 
     TITLE = "Betafloor"
     CSS_PATH = "style.tcss"
-    HORIZONTAL_BREAKPOINTS = [(0, "-narrow"), (110, "-wide")]  # noqa: RUF012  Textual declares it so
+    HORIZONTAL_BREAKPOINTS = [(0, "-narrow"), (WIDE, "-wide")]  # noqa: RUF012  Textual declares it so
     MODES: ClassVar[dict[str, str | Callable[[], Screen[None]]]] = {
         "shelf": ShelfScreen,
         "bench": _bench,
@@ -68,7 +68,7 @@ class BetafloorApp(App[int]):
 
     # --- the shelf
 
-    @work(thread=True, group="shelf")
+    @work(thread=True, group="shelf", description="shelf")
     def _open_shelf(self) -> None:
         try:
             shelf = self.source.shelf()
@@ -89,7 +89,7 @@ class BetafloorApp(App[int]):
     def take_trouble(self, message: ShelfTrouble) -> None:
         self.session = replace(self.session, trouble=message.says)
 
-    @work(thread=True, group="warm")
+    @work(thread=True, group="warm", description="warm")
     def _warm(self) -> None:
         """Import what the bench will need while the user looks at the shelf."""
         from .judge import warm
@@ -150,9 +150,17 @@ class BetafloorApp(App[int]):
 _AWAY = {"open_shelf", "open_bench", "open_shortlist", "help", "palette"}
 
 
-def run(shelf_path: Path, demo: bool = False, requirement: Path | None = None) -> int:
-    """Show the interface on a shelf file, with a requirement file loaded if one is given. Gives the exit code."""
+def run(
+    shelf_path: Path,
+    demo: bool = False,
+    requirement: Path | None = None,
+    prepare: Callable[[], object] | None = None,
+) -> int:
+    """Show the interface on a shelf file, with a requirement file loaded if one is given. Gives the exit code.
+
+    `prepare` makes the file first, in a thread after the first paint: a demo shelf takes a second or two.
+    """
     from .store_source import StoreSource
 
-    app = BetafloorApp(StoreSource(shelf_path), demo=demo, requirement=requirement)
+    app = BetafloorApp(StoreSource(shelf_path, prepare), demo=demo, requirement=requirement)
     return app.run() or app.return_code or 0

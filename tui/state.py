@@ -48,9 +48,13 @@ class Draft:
     texts: Mapping[str, str] = field(default_factory=lambda: NOTHING)  # only fields in which something is written
 
 
-@dataclass(frozen=True, eq=False)
+@dataclass(frozen=True, eq=False, repr=False)
 class Session:
-    """Everything that is shown. Arrays within are never changed."""
+    """Everything that is shown. Arrays within are never changed.
+
+    It has no repr of its fields: Textual writes out a worker's arguments unless the worker has a
+    description, and a shelf written out costs a second.
+    """
 
     shelf: "Shelf | None" = None
     shelf_name: str = ""

@@ -1,7 +1,7 @@
 """The shelf file behind the interface; the store is imported in the thread that first asks it."""
 
 import json
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from dataclasses import asdict
 from pathlib import Path
@@ -17,10 +17,11 @@ if TYPE_CHECKING:
 
 
 class StoreSource:
-    """A shelf file, opened for each question."""
+    """A shelf file, opened for each question; `prepare` makes it before the first one is asked."""
 
-    def __init__(self, path: Path) -> None:
+    def __init__(self, path: Path, prepare: Callable[[], object] | None = None) -> None:
         self.path = path
+        self._prepare = prepare
 
     @property
     def name(self) -> str:
@@ -40,6 +41,9 @@ class StoreSource:
             raise SourceError(f"{self.path}: {error.strerror or error}; check the name and the rights") from error
 
     def shelf(self) -> "Shelf":
+        prepare, self._prepare = self._prepare, None
+        if prepare is not None:
+            prepare()
         with self._open() as store:
             return store.shelf()
 

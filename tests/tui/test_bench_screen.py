@@ -251,3 +251,19 @@ async def test_ranking_can_be_stopped(make_app) -> None:
         await pilot.pilot.press("ctrl+x")
         await pilot.rest()
         assert "Traceback" not in pilot.text and pilot.session.ranking is not None
+
+
+async def test_no_worker_writes_out_the_shelf_it_is_given(make_app, monkeypatch) -> None:
+    """Textual writes out a worker's arguments unless the worker has a description: a second a key."""
+    from engine.ranking import Ranking
+    from engine.shelf import Shelf
+
+    def refuse(self: object) -> str:
+        raise AssertionError("written out")
+
+    for kind in (Shelf, Ranking):
+        monkeypatch.setattr(kind, "__repr__", refuse)
+    async with running(make_app(), (120, 40)) as pilot:
+        await pilot.fill()
+        await pilot.press("f5", "down", "enter", "c", "escape", "escape", "space", "f4", "s")
+        assert pilot.session.ranking is not None

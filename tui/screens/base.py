@@ -15,6 +15,7 @@ if TYPE_CHECKING:
     from ..app import BetafloorApp
 
 Result = TypeVar("Result")
+WIDE = 110  # cells from which a screen shows its panes side by side
 
 
 def key_is_free(focused: Widget | None, action: str) -> bool | None:

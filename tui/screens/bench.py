@@ -17,7 +17,7 @@ from ..widgets.cells import wrap
 from ..widgets.form import Form, meaning_of
 from ..widgets.lines_view import LinesView
 from ..widgets.text_view import TextView
-from .base import Room
+from .base import WIDE, Room
 
 if TYPE_CHECKING:
     from engine.ranking import Explanation
@@ -26,6 +26,7 @@ if TYPE_CHECKING:
 PATIENCE = 0.08  # s without a key before the shelf is ranked again
 _OF_RANKING = ("open", "mark", "calculation", "verdicts", "move")
 _OF_FORM = ("next_field", "change_word")
+THEN = "Next: Enter opens a part, c its calculation sheet, Space marks it; F5 is the form."
 NEXT = "F6 loads an example; or fill in the fields with a star. The ranking follows as you type."
 
 
@@ -42,7 +43,6 @@ class BenchScreen(Room):
     BenchScreen #left, BenchScreen #right { width: 1fr; height: 1fr; }
     BenchScreen.-narrow #meaning { height: 2; }
     BenchScreen.-wide #left { width: 41; border-right: solid $primary; }
-    BenchScreen.-narrow .-away { display: none; }
     BenchScreen #meaning { height: 3; color: $text-muted; padding: 0 1; }
     BenchScreen #standing { height: auto; min-height: 1; padding: 0 1; text-style: bold; }
     BenchScreen #reasons { height: 7; border-top: solid $primary; }
@@ -54,6 +54,7 @@ class BenchScreen(Room):
         self._timer: Timer | None = None
         self._duty = ""  # whose fields the form shows
         self._progress = ""
+        self._ranking_shown = False  # rather than the form, where there is no room for both
         self._explained: Explanation | None = None
 
     def body(self) -> ComposeResult:
@@ -62,19 +63,21 @@ class BenchScreen(Room):
                 self._duty = self.session.draft.duty
                 yield Form(form_fields(self.session.draft.duty), id="form")
                 yield Static("", id="meaning", markup=False)
-            with Vertical(id="right", classes="-away"):
+            with Vertical(id="right"):
                 yield Static(NEXT, id="standing", markup=False)
                 yield LinesView(id="ranking", empty=NEXT)
                 yield TextView(id="reasons")
 
     def on_mount(self) -> None:
         super().on_mount()
+        self._arrange(ranking=False)
         self.query_one(Form).enter()
         path, self.desk.first_requirement = self.desk.first_requirement, None
         if path is not None:
             from .load import load_file
 
             load_file(self.desk, path)
+            self.action_other_pane()
 
     # --- showing
 
@@ -145,7 +148,7 @@ class BenchScreen(Room):
         if session.shelf is not None and session.draft.texts:
             self._judge_in_thread(session)
 
-    @work(thread=True, exclusive=True, group="judge")
+    @work(thread=True, exclusive=True, group="judge", description="judge")
     def _judge_in_thread(self, session: Session) -> None:
         from ..judge import judge
 
@@ -197,7 +200,7 @@ class BenchScreen(Room):
         elif self.session.ranking is not None:
             self._explain(self.session, message.row)
 
-    @work(thread=True, exclusive=True, group="explain")
+    @work(thread=True, exclusive=True, group="explain", description="explain")
     def _explain(self, session: Session, row: int) -> None:
         from engine.explain import explain
 
@@ -219,14 +222,22 @@ class BenchScreen(Room):
 
     def action_other_pane(self) -> None:
         """From the form to the ranking and back."""
-        left, right = self.query_one("#left"), self.query_one("#right")
-        to_ranking = left in (self.focused.ancestors if self.focused else ())
-        left.set_class(to_ranking, "-away")
-        right.set_class(not to_ranking, "-away")
+        to_ranking = self.query_one("#left") in (self.focused.ancestors if self.focused else ())
+        self._arrange(ranking=to_ranking)
         if to_ranking:
             self.set_focus(self.query_one("#ranking"))
         else:
             self.query_one(Form).enter()
+
+    def _arrange(self, *, ranking: bool) -> None:
+        """On a narrow screen show either pane. (By `display`: a class would style the whole form anew.)"""
+        wide = self.app.size.width >= WIDE
+        self._ranking_shown = ranking
+        self.query_one("#left").display = wide or not ranking
+        self.query_one("#right").display = wide or ranking
+
+    def on_resize(self) -> None:
+        self._arrange(ranking=self._ranking_shown)
 
     def action_back(self) -> None:
         """From the form to the ranking; from the ranking to the shelf."""
@@ -317,7 +328,7 @@ def standing(session: Session, progress: str) -> str:
         counts = summary(session.ranking)
         kept = "; only those that fit are shown (v)" if session.only_fitting else ""
         if not session.stale and not session.problems:
-            return said or counts + kept
+            return (said or counts + kept) + ("" if session.marks else f"\n{THEN}")
         counts = f"STALE, of the last sound requirement: {counts}{kept}"
         return f"{said or problems_line(session)}\n{counts}"
     return said or problems_line(session) or NEXT

@@ -74,7 +74,7 @@ class PartScreen(Room):
         """The name of the part."""
         return str(self.session.shelf.names[self.row]) if self.session.shelf is not None else ""
 
-    @work(thread=True, exclusive=True, group="part")
+    @work(thread=True, exclusive=True, group="part", description="part")
     def _read(self) -> None:
         session = self.session
         try:

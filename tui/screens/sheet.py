@@ -38,7 +38,7 @@ class SheetScreen(Room):
         self.set_focus(view)
         self._write()
 
-    @work(thread=True, exclusive=True, group="sheet")
+    @work(thread=True, exclusive=True, group="sheet", description="sheet")
     def _write(self) -> None:
         from ..exports import make_sheet
 

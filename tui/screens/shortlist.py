@@ -114,7 +114,7 @@ class ShortlistScreen(Room):
         if self._ready():
             self._save(self.session, self.rows(self.session))
 
-    @work(thread=True, exclusive=True, group="save")
+    @work(thread=True, exclusive=True, group="save", description="save")
     def _save(self, session: Session, rows: list[int]) -> None:
         if session.ranking is None:
             return
