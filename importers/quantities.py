@@ -113,6 +113,8 @@ def _split(text: str) -> tuple[float, str]:
     rest = joined[match.end() :].strip()
     if rest and (rest[0].isdigit() or rest[0] in ".,*+-^"):
         raise QuantityError("not one number", "write a single number with its unit")
+    if rest and not re.search(r"[A-Za-zµμΩΩ°%]", rest):
+        raise QuantityError("not a number", f"write it without {rest!r}")
     return _finite(float(match.group())), rest
 
 

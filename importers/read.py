@@ -77,7 +77,7 @@ def _recognised(table: Table, polarity: str):  # type: ignore[no-untyped-def]
         only_structure = plain_columns(table.header).keys() <= {"part", "polarity", "package", "source"}
         limits = any(wide_form.wide_column(h) for h in table.header if h.casefold() not in ("package", "source"))
         return "structures" if only_structure and not limits else "wide", wide_form.arrivals(table, polarity)
-    seen = ", ".join(heading or "(empty)" for heading in table.header[:12])
+    seen = ", ".join(" ".join(heading.split())[:40] or "(empty)" for heading in table.header[:12])
     raise ReadError(
         f"{table.file}: the headings are {seen}; wanted is part with symbol, min, typ and max (a limit a row), "
         "or part with columns such as VCEO and HFE_MIN (a part a row)"

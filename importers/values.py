@@ -61,15 +61,17 @@ def _read_cell(symbol: Symbol, column: str, text: str, unit_text: str) -> list[t
 
 
 def _number(symbol: Symbol, column: str, text: str, unit_text: str) -> float:
+    unit = unit_text.strip()
+    bare = not re.search(r"[A-Za-zµμΩΩ°%]", re.sub(r"(?<=\d)[eE][-+]?\d+$", "", text.strip()))
     try:
-        value = read_quantity(text, symbol.unit)
-        bare = not re.search(r"[A-Za-zµμΩΩ°%]", re.sub(r"(?<=\d)[eE][-+]?\d+$", "", text.strip()))
-        return scaled(value, unit_factor(unit_text, symbol.unit)) if bare and unit_text.strip() else value
+        factor = unit_factor(unit, symbol.unit) if bare and unit else 1.0
     except QuantityError as error:
-        where = "unit" if error.says.startswith("unit") else column
-        shown = unit_text if where == "unit" else text
-        kind = "unit" if where == "unit" else "not-a-number"
-        raise CellError(where, shown, kind, f"{symbol.name}: {error.says}; {error.mend}") from error
+        raise CellError("unit", unit_text, "unit", f"{symbol.name}: {error.says}; {error.mend}") from error
+    try:
+        return scaled(read_quantity(text, symbol.unit), factor)
+    except QuantityError as error:
+        kind = "unit" if error.says.startswith("unit") else "not-a-number"
+        raise CellError(column, text, kind, f"{symbol.name}: {error.says}; {error.mend}") from error
 
 
 def _strip_signs(found: dict[str, float | None]) -> None:
