@@ -15,6 +15,7 @@ from .curves import Curve
 from .evidence import Evidence, Grades
 from .part import STRUCTURES
 from .physics.constants import ROOM, ROOM_KELVIN, ZERO_CELSIUS, thermal_voltage
+from .physics.junction import COLD_SHIFT
 from .shelf import SYMBOL_CODES, Shelf
 
 Floats = NDArray[np.float64]
@@ -105,9 +106,9 @@ def prepare(shelf: Shelf) -> Prepared:
         columns: dict[str, Any] = {}
         columns |= _structure(shelf)
         columns |= _ratings(shelf)
-        columns |= _thermal(shelf)
+        columns |= _thermal(shelf, columns["vceo"])
         columns |= _saturation(shelf)
-        columns |= _junction(shelf)
+        columns |= _junction(shelf, columns["darlington"])
         columns |= _gain(shelf, columns)
         columns |= _leakage(shelf, columns)
         columns |= _times(shelf)
@@ -141,7 +142,7 @@ def _ratings(shelf: Shelf) -> dict[str, Floats]:
     }
 
 
-def _thermal(shelf: Shelf) -> dict[str, Floats | Grades | Mask]:
+def _thermal(shelf: Shelf, vceo: Floats) -> dict[str, Floats | Grades | Mask]:
     """Thermal resistances: as printed, else from the derating line, else from power and temperature."""
     r, pd = shelf.ratings, shelf.points["PD"]
     tj = r["tj_max"]
@@ -153,6 +154,7 @@ def _thermal(shelf: Shelf) -> dict[str, Floats | Grades | Mask]:
     ja, ja_grade = _resistance(r["rth_ja"], 1 / r["slope_ta"], _most(ambient_points))
     jc, jc_grade = _resistance(r["rth_jc"], 1 / r["slope_tc"], _most(case_points))
     pd_case = _most(np.where(at_case, pd["max"], np.nan))
+    pd_case = np.where(np.isnan(pd_case), _most(np.where(bare, pd["max"], np.nan)), pd_case)
     named = np.isin(np.array([str(p).upper() for p in shelf.package], dtype=object), POWER_PACKAGES)
     return {
         "rth_ja": ja,
@@ -160,9 +162,9 @@ def _thermal(shelf: Shelf) -> dict[str, Floats | Grades | Mask]:
         "rth_jc": jc,
         "rth_jc_grade": jc_grade,
         "pd_ambient": _most(np.where(at_ambient | small, pd["max"], np.nan)),
-        "pd_case": np.where(np.isnan(pd_case), _most(np.where(bare, pd["max"], np.nan)), pd_case),
+        "pd_case": pd_case,
         "power": named | (pd_case >= 10) | (r["ic"] >= 3),
-        "v_epi": (0.5 + 0.02 * r["vceo"]) / r["ic"],
+        "v_epi": (0.5 + 0.02 * vceo) / r["ic"],
     }
 
 
@@ -190,7 +192,7 @@ def _saturation(shelf: Shelf) -> dict[str, Floats | Grades]:
     }
 
 
-def _junction(shelf: Shelf) -> dict[str, Floats | Grades]:
+def _junction(shelf: Shelf, darlington: Mask) -> dict[str, Floats | Grades]:
     """VBE from above (saturation tests) and from below (minimums on file, else common practice)."""
     sat = shelf.points["VBE(sat)"]
     v, typical = _limit_or_typical(sat["max"], sat["typ"])
@@ -202,23 +204,24 @@ def _junction(shelf: Shelf) -> dict[str, Floats | Grades]:
         "vbe_ib": np.where(used, sat["ib"], np.nan),
         "vbe_v": np.where(used, v, np.nan),
         "vbe_grade": _grade(used, typical),
-        "floor_v": _junction_floor(shelf),
+        "floor_v": _junction_floor(shelf, darlington),
         "floor_i": shelf.ratings["ic"] / 10,
     }
 
 
-def _junction_floor(shelf: Shelf) -> Floats:
+def _junction_floor(shelf: Shelf, darlington: Mask) -> Floats:
     """VBE that every device has at least at a tenth of its rated collector current, 25 °C. [V]
 
     Common practice says 0.60 V. A minimum on file says more where it was measured at a small current, for
     the ohmic drop in it may be half a volt at the rated current; and where it says less, it is believed.
+    A minimum measured cold is first moved to 25 °C.
     """
     vt = float(thermal_voltage(ROOM))
-    rated = shelf.ratings["ic"]
+    rated, per_kelvin = shelf.ratings["ic"], COLD_SHIFT * np.where(darlington, 2.0, 1.0)
     sure, most = np.full(len(shelf), USUAL_FLOOR), np.full(len(shelf), -np.inf)
     for points in (shelf.points["VBE(on)"], shelf.points["VBE(sat)"]):
-        for low, ic in zip(points["min"], points["ic"], strict=True):
-            moved = low + vt * np.log(rated / 10 / ic)
+        for low, ic, temp in zip(points["min"], points["ic"], points["temp"], strict=True):
+            moved = low + vt * np.log(rated / 10 / ic) - per_kelvin * np.maximum(ROOM - temp, 0.0)
             sure = np.where(moved - OHMIC * ic / rated - 0.02 > sure, moved - OHMIC * ic / rated - 0.02, sure)
             most = np.where(moved > most, moved, most)
     return np.where(np.isinf(most), sure, np.minimum(sure, most))
@@ -241,6 +244,10 @@ def _gain(shelf: Shelf, ready: Mapping[str, Any]) -> dict[str, Floats | Curve]:
     slope = np.where(darlington, 1.0, 0.5)
     usual = np.where(darlington, DARLINGTON_EXPONENT, COLD_EXPONENT)
     exponent = _cold_exponent(points, gain, stated & (points["temp"] < 15), (curve, curve_low), slope)
+    exponent = np.where(np.isnan(exponent), usual, exponent)
+    # cold points that are the only ones are no measure of themselves
+    at_room = (used & (points["temp"] >= 15)).any(axis=0)
+    exponent = np.where(at_room, exponent, np.maximum(exponent, usual))
     share = _share_kept(ic, gain, low, curve, slope)
     kept = np.where(low, 1.0, np.minimum(share, GAIN_AT_LOW_VCE))
     quasi = np.where(low, 1.0, np.minimum(share, GAIN_QUASI_SATURATED))
@@ -250,7 +257,7 @@ def _gain(shelf: Shelf, ready: Mapping[str, Any]) -> dict[str, Floats | Curve]:
         "gain_plain": _with_tests(ic, gain * kept, vce, used, typical, tests),
         "gain_quasi": _with_tests(ic, gain * quasi, vce, used, typical, tests),
         "slope_below": slope,
-        "cold_exponent": np.where(np.isnan(exponent), usual, exponent),
+        "cold_exponent": exponent,
     }
 
 

@@ -50,7 +50,7 @@ def heat_up(
     floor_i = Term(
         "I floor", p.floor_i, "A", Evidence.DERIVED, "its current", "a tenth of IC, or the test current", ("IC",)
     )
-    least = given("IC least", lightest_load(sit, float(np.max(n.v_on_most))), "A", "lightest load")
+    least = Term("IC least", lightest_load(sit, n.v_on_most), "A", meaning="lightest load", source="requirement")
     vbe_min = junction.vbe_hot(IC=least, TJ=tj_guess, V_floor=floor_v, I_floor=floor_i)
     ib_max = drive.base_current(
         "IB max", "highest base current", V_drive=sit.drive_max, VBE=vbe_min, RB=net.rb, RB_factor=net.down,
