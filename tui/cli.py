@@ -53,6 +53,7 @@ def demo(context: click.Context, write: Path | None) -> None:
         return
     import tempfile
 
+    _need_terminal()
     with tempfile.TemporaryDirectory(prefix="betafloor-demo-") as folder:
         click.echo("The parts, their limits and the stock of this shelf are invented.", err=True)
         asked = Path(folder) / REQUIREMENTS[0]
@@ -64,10 +65,15 @@ for _command in (import_, rank, sheet, judge, part, shortlist, stock, backup, ch
     cli.add_command(_command)
 
 
-def _interface(path: Path, *, demo: bool, requirement: Path | None = None) -> int:
-    """Show the interface on a shelf file, with a requirement loaded if one is given."""
+def _need_terminal() -> None:
+    """The interface draws on a terminal; anywhere else the commands answer."""
     if not sys.stdout.isatty() or not sys.stdin.isatty():
         fail("the interface needs a terminal; use a command such as `betafloor rank`, see --help", BAD_INPUT)
+
+
+def _interface(path: Path, *, demo: bool, requirement: Path | None = None) -> int:
+    """Show the interface on a shelf file, with a requirement loaded if one is given."""
+    _need_terminal()
     from .app import run
 
     return run(path, demo=demo, requirement=requirement)
