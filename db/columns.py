@@ -2,6 +2,7 @@
 
 import sqlite3
 from collections.abc import Mapping
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -29,7 +30,7 @@ def load(conn: sqlite3.Connection) -> Shelf | None:
     )
 
 
-def _array(dtype: str, rows: int, data: bytes) -> NDArray[np.generic]:
+def _array(dtype: str, rows: int, data: bytes) -> NDArray[Any]:
     if dtype == _TEXT:
         words = data.decode("utf-8").split("\n") if data else []
         column = np.empty(len(words), dtype=object)
@@ -50,7 +51,9 @@ def build(conn: sqlite3.Connection) -> Shelf:
     )
     numbers = np.fromiter(cursor, dtype=np.dtype((np.float64, len(_VALUES) + 2)))
     numbers = numbers.reshape(-1, len(_VALUES) + 2)
-    columns = {name: np.ascontiguousarray(numbers[:, i + 2]) for i, name in enumerate(_VALUES)}
+    columns: dict[str, NDArray[np.float64]] = {
+        name: np.ascontiguousarray(numbers[:, i + 2]) for i, name in enumerate(_VALUES)
+    }
     columns["min"], columns["max"] = columns.pop("bound_min"), columns.pop("bound_max")
     owner = np.searchsorted(ids, numbers[:, 0].astype(np.int64))
     table = LimitTable(owner.astype(np.int64), numbers[:, 1].astype(np.int64), columns)

@@ -71,11 +71,11 @@ def save(conn: sqlite3.Connection, head: tuple[int, str, str, str, str], entries
 
 def all_of(conn: sqlite3.Connection) -> list[Shortlist]:
     """Saved shortlists with their entries, newest first."""
-    heads = conn.execute(
+    heads: list[tuple[int, str, str, str, str, str, str]] = conn.execute(
         "SELECT s.id, r.title, r.toml, s.policy, s.program, s.shelf_fingerprint, s.at FROM shortlist s "
         "JOIN requirement r ON r.id = s.requirement ORDER BY s.id DESC"
     ).fetchall()
-    return [Shortlist(*head, entries=_entries(conn, head[0])) for head in heads]
+    return [Shortlist(*head, _entries(conn, head[0])) for head in heads]
 
 
 def _entries(conn: sqlite3.Connection, shortlist: int) -> tuple[Entry, ...]:

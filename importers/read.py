@@ -7,7 +7,7 @@ from pathlib import Path
 from engine.part import Arrival
 
 from .formats import long_form, wide_form
-from .headings import condition_columns, plain_columns
+from .headings import condition_columns, plain_columns, wide_column
 from .problem import ReadError, RowProblem
 from .tables import Table, parse_table, read_table
 
@@ -75,7 +75,7 @@ def _recognised(table: Table, polarity: str):  # type: ignore[no-untyped-def]
         return "long", long_form.arrivals(table, polarity)
     if wide_form.recognise(table.header):
         only_structure = plain_columns(table.header).keys() <= {"part", "polarity", "package", "source"}
-        limits = any(wide_form.wide_column(h) for h in table.header if h.casefold() not in ("package", "source"))
+        limits = any(wide_column(h) for h in table.header if h.casefold() not in ("package", "source"))
         return "structures" if only_structure and not limits else "wide", wide_form.arrivals(table, polarity)
     seen = ", ".join(" ".join(heading.split())[:40] or "(empty)" for heading in table.header[:12])
     raise ReadError(

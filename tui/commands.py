@@ -5,6 +5,7 @@ from `COMMANDS`; a command named `open-bench` is handled by a method `action_ope
 or of the app where its room is `everywhere`.
 """
 
+import string
 from dataclasses import dataclass
 
 from textual.binding import Binding, BindingType
@@ -90,7 +91,10 @@ COMMANDS: tuple[Command, ...] = (
             own=True),
     Command("back", ("shelf", "bench", "part", "sheet", "shortlist", "weights", "help", "picker", "ask"), ("escape",),
             "Esc", "back", "Leave this field or screen", typing=True),
-    Command("accept", ("ask",), ("enter",), "Enter", "do it", "Do what is asked", typing=True),
+    Command("narrow", ("picker",), (*string.ascii_lowercase, *string.digits, "space", "minus", "full_stop", "backspace"),
+            "a-z", "narrow", "Letters narrow the list; Backspace takes one back", argument=True),
+    Command("accept", ("ask",), ("enter",), "Enter", "do it", "Do what is asked", typing=True,
+            own=True),
 )  # fmt: skip
 
 

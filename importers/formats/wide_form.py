@@ -105,7 +105,7 @@ def _limits(
 
 def _limit(name: str, fields: dict[str, _Text], structure: str, source: str) -> Limit:
     symbol = SYMBOLS[name]
-    texts = {bound: fields[bound].text for bound in ("min", "typ", "max") if bound in fields}
+    texts: dict[str, str] = {bound: fields[bound].text for bound in ("min", "typ", "max") if bound in fields}
     units = {fields[bound].unit for bound in texts}
     try:
         bounds = read_bounds(symbol, texts, units.pop() if len(units) == 1 else "", structure)

@@ -125,8 +125,11 @@ def test_registered_types_come_out_as_an_engineer_expects(registered: Path, name
 
 @pytest.mark.parametrize(
     ("name", "code"),
-    [("valve-solenoid", 0), ("pump-relay", 0), ("grow-lamp-indicator", 0), ("fan-supply", 0), ("soil-probe", 0), ("heating-mat", 1)],
-)
+    [
+        ("valve-solenoid", 0), ("pump-relay", 0), ("grow-lamp-indicator", 0),
+        ("fan-supply", 0), ("soil-probe", 0), ("heating-mat", 1),
+    ],
+)  # fmt: skip
 def test_the_demo_requirements_are_answered(demo: Path, name: str, code: int) -> None:
     done = betafloor("rank", demo / f"{name}.toml", shelf=demo / "demo.shelf")
     assert done.returncode == code and done.stdout and "155 parts" in done.stderr

@@ -17,7 +17,9 @@ ROOT = Path(__file__).parents[2]
 
 def python(code: str, *arguments: str) -> subprocess.Popen[str]:
     environment = {**os.environ, "PYTHONPATH": str(ROOT)}
-    return subprocess.Popen([sys.executable, "-c", code, *arguments], text=True, stdout=subprocess.PIPE, env=environment)
+    return subprocess.Popen(
+        [sys.executable, "-c", code, *arguments], text=True, stdout=subprocess.PIPE, env=environment
+    )
 
 
 MOVE = """

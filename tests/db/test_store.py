@@ -30,9 +30,7 @@ def land(store: Store, rows: list[Arrival], **options: bool) -> tuple[int, int, 
 
 def same(a: Shelf, b: Shelf) -> bool:
     ratings = all(np.array_equal(a.ratings[k], b.ratings[k], equal_nan=True) for k in a.ratings)
-    points = all(
-        np.array_equal(a.points[g][f], b.points[g][f], equal_nan=True) for g in a.points for f in a.points[g]
-    )
+    points = all(np.array_equal(a.points[g][f], b.points[g][f], equal_nan=True) for g in a.points for f in a.points[g])
     return ratings and points and a.fingerprint == b.fingerprint and list(a.names) == list(b.names)
 
 
@@ -177,7 +175,9 @@ def test_the_file_says_whose_it_is(path: Path) -> None:
     assert conn.execute("PRAGMA application_id").fetchone() == (APPLICATION_ID,)
     assert conn.execute("PRAGMA user_version").fetchone() == (VERSION,)
     assert conn.execute("PRAGMA journal_mode").fetchone() == ("wal",)
-    strict = conn.execute("SELECT name FROM pragma_table_list WHERE schema='main' AND strict=0 AND name NOT LIKE 'sqlite_%'")
+    strict = conn.execute(
+        "SELECT name FROM pragma_table_list WHERE schema='main' AND strict=0 AND name NOT LIKE 'sqlite_%'"
+    )
     assert strict.fetchall() == []
     conn.close()
 
@@ -272,7 +272,11 @@ def test_shortlists_keep_their_requirement_and_order(path: Path) -> None:
         entries = [Entry(1, "B", "fits", "{}"), Entry(2, "A", "cannot say", "{}")]
         store.save_shortlist(number, "none", "betafloor", "abc", entries, at="2026-01-02T00:00:00Z")
         (kept,) = store.shortlists()
-        assert (kept.title, kept.at, [one.part for one in kept.entries]) == ("Valve", "2026-01-02T00:00:00Z", ["B", "A"])
+        assert (kept.title, kept.at, [one.part for one in kept.entries]) == (
+            "Valve",
+            "2026-01-02T00:00:00Z",
+            ["B", "A"],
+        )
 
 
 def test_a_backup_opens_and_holds_the_same(path: Path, tmp_path: Path) -> None:

@@ -45,7 +45,10 @@ def test_a_pulsed_current_rating_is_the_peak() -> None:
 
 
 def test_ranges_and_bounds_in_one_cell() -> None:
-    assert (only_limit(long("Q1,NPN,hFE,100-300,,,,IC 1 mA,s")).max, only_limit(long("Q1,NPN,hFE,>40,,,,,s")).min) == (300, 40)
+    assert (only_limit(long("Q1,NPN,hFE,100-300,,,,IC 1 mA,s")).max, only_limit(long("Q1,NPN,hFE,>40,,,,,s")).min) == (
+        300,
+        40,
+    )
     assert only_limit(long("Q1,NPN,VCE(sat),,,<0.4,V,,s")).max == 0.4
 
 
@@ -88,7 +91,11 @@ def test_an_unknown_symbol_is_kept_aside() -> None:
 
 
 def test_static_and_small_signal_gain_are_told_apart() -> None:
-    assert [only_limit(long(f"Q1,NPN,{s},40,,,,IC 1 mA,s")).symbol for s in ("hFE", "hfe", "HFE")] == ["hFE", "hfe", "hFE"]
+    assert [only_limit(long(f"Q1,NPN,{s},40,,,,IC 1 mA,s")).symbol for s in ("hFE", "hfe", "HFE")] == [
+        "hFE",
+        "hfe",
+        "hFE",
+    ]
     assert "static" in only_limit(long('Q1,NPN,hfe,40,,,,"IC 1 A, pulsed",s')).flag
 
 
@@ -132,6 +139,11 @@ def test_what_is_no_table_of_parts_is_refused_in_one_line(text: str) -> None:
 
 def test_encodings_and_delimiters() -> None:
     german = "part;polarity;symbol;max;unit\nQ1;NPN;ICBO;0,1;µA\n"
-    for data in (german.encode("cp1252"), german.encode("utf-8"), german.encode("utf-16"), german.replace(";", "\t").encode()):
+    for data in (
+        german.encode("cp1252"),
+        german.encode("utf-8"),
+        german.encode("utf-16"),
+        german.replace(";", "\t").encode(),
+    ):
         (arrival,) = read_bytes(data, "t").arrivals
         assert arrival.part.limits[0].max == 100e-9

@@ -11,7 +11,21 @@ from importers.read import read_bytes
 
 LINES = (Path(__file__).parents[1] / "data" / "registered-types.csv").read_bytes().splitlines(keepends=True)[:40]
 WIDE = b"part,type,VCEO,IC [mA],HFE_MIN,HFE_IC,VCESAT_MAX,VCESAT_IC,VCESAT_IB,stock\nQ1,NPN,45,800,100,0.1,0.3,0.15,0.015,5\n"
-ODD = [b"\0", b'"', b"\xff\xfe", b"1e999", b"-", b",,,,", b"\r", b"9" * 400, b"=1+1", b"\xc2\xb5", b"nan", b"<", b"\n\n"]
+ODD = [
+    b"\0",
+    b'"',
+    b"\xff\xfe",
+    b"1e999",
+    b"-",
+    b",,,,",
+    b"\r",
+    b"9" * 400,
+    b"=1+1",
+    b"\xc2\xb5",
+    b"nan",
+    b"<",
+    b"\n\n",
+]
 
 
 def mangled(seed: int) -> bytes:

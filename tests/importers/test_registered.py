@@ -76,7 +76,9 @@ ROWS = [
 ]
 
 
-@pytest.mark.parametrize(("row", "name", "symbol", "low", "high", "conditions", "pulsed"), ROWS, ids=lambda v: str(v)[:24])
+@pytest.mark.parametrize(
+    ("row", "name", "symbol", "low", "high", "conditions", "pulsed"), ROWS, ids=lambda v: str(v)[:24]
+)
 def test_a_row_reads_as_it_stands(
     types: Reading,
     row: int,

@@ -67,6 +67,31 @@ def test_keys_sent_behind_the_one_that_opens_a_screen_reach_it(terminal: Termina
     assert "Valve" in terminal.until("Supply, lowest")
 
 
+def test_a_part_searched_and_opened_in_one_go_is_that_part(terminal: Terminal) -> None:
+    terminal.until("10 of 10")
+    for name in ("qx-130", "qx-112", "oops"):
+        terminal("send-keys", "/", *name, "Enter", "Enter")
+        assert name.upper() in terminal.until("VCEO  ").upper().splitlines()[0]
+        terminal("send-keys", "Escape")
+        terminal.until("1 of 10")
+        terminal("send-keys", "x")
+        terminal.until("10 of 10")
+
+
+def test_enter_does_not_overtake_the_letters_before_it(terminal: Terminal) -> None:
+    terminal.until("10 of 10")
+    terminal("send-keys", "Space", "F3", "F6", "i", "r", "r", "i", "Enter")
+    terminal.until("Irrigation valve solenoid")
+    terminal.until("F5 form/list")
+    terminal("send-keys", "F4")
+    terminal.until("For: Irrigation")
+    terminal("send-keys", "e", "C-u")
+    terminal.until("Write the shortlist")
+    terminal("send-keys", "-l", "list-of-parts.xyz")
+    terminal("send-keys", "Enter")
+    assert "list-of-parts.xyz" in terminal.until("must end in")
+
+
 def test_the_program_leaves_the_terminal_as_it_was(terminal: Terminal) -> None:
     terminal.until("10 of 10")
     terminal("send-keys", "C-q")

@@ -52,8 +52,9 @@ class Ask(Dialog[str]):
         self.confirmed = ""
         self.query_one("#doubt", Static).update("")
 
-    def action_accept(self) -> None:
-        """Answer, unless the text is doubted."""
+    @on(Input.Submitted)
+    def accept(self) -> None:
+        """Answer, unless the text is doubted. The field itself takes Enter, in its turn after the letters."""
         text = self.query_one(Input).value.strip()
         doubt = self.doubt(text) if text else Doubt("Write something, or leave with Esc.", final=True)
         if doubt is None or (not doubt.final and self.confirmed == text):

@@ -1,5 +1,6 @@
 """What every screen shares: its room's keys, the title line, the footer, and the app's session."""
 
+import asyncio
 from typing import TYPE_CHECKING, TypeVar, cast
 
 from textual.app import ComposeResult
@@ -71,6 +72,19 @@ class Room(Screen[None]):
 
     def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:
         return key_is_free(self.focused, action)
+
+    async def typed_out(self) -> None:
+        """Wait until what was typed into the focused field has arrived at the screen.
+
+        A command is answered by the app at once; letters pass through the queues of the field and of what
+        is around it. Without this, Enter would act on a search that is not yet written to its end.
+        """
+        for node in self.focused.ancestors_with_self if self.focused else ():
+            if node is self.app:
+                break
+            arrived = asyncio.Event()
+            node.call_later(arrived.set)
+            await arrived.wait()
 
     def on_descendant_focus(self) -> None:
         self.query_one(KeysLine).refresh(layout=True)

@@ -1,6 +1,7 @@
 """The bench: a requirement in a form, the shelf ranked by it while it is written, and the reasons."""
 
 from dataclasses import replace
+from functools import partial
 from typing import TYPE_CHECKING
 
 from textual import on, work
@@ -23,7 +24,7 @@ if TYPE_CHECKING:
     from engine.ranking import Explanation
     from engine.requirement import Field
 
-PATIENCE = 0.08  # s without a key before the shelf is ranked again
+PATIENCE = 0.08  # s without a key before the shelf is ranked again, or reasons are given
 _OF_RANKING = ("open", "mark", "calculation", "verdicts", "move")
 _OF_FORM = ("next_field", "change_word")
 THEN = "Next: Enter opens a part, c its calculation sheet, Space marks it; F5 is the form."
@@ -52,6 +53,7 @@ class BenchScreen(Room):
     def __init__(self) -> None:
         super().__init__()
         self._timer: Timer | None = None
+        self._explain_timer: Timer | None = None
         self._duty = ""  # whose fields the form shows
         self._progress = ""
         self._ranking_shown = False  # rather than the form, where there is no room for both
@@ -134,8 +136,8 @@ class BenchScreen(Room):
 
     @property
     def waiting(self) -> bool:
-        """Whether a ranking is due soon."""
-        return self._timer is not None
+        """Whether a ranking or reasons are due soon."""
+        return self._timer is not None or self._explain_timer is not None
 
     def _judge_soon(self) -> None:
         if self._timer is not None:
@@ -195,10 +197,17 @@ class BenchScreen(Room):
 
     @on(LinesView.Moved, "#ranking")
     def take_cursor(self, message: LinesView.Moved) -> None:
+        if self._explain_timer is not None:
+            self._explain_timer.stop()
         if message.row is None:
             self.query_one("#reasons", TextView).show([])
-        elif self.session.ranking is not None:
-            self._explain(self.session, message.row)
+        else:  # once the cursor rests: a page through the list must not pay for reasons nobody reads
+            self._explain_timer = self.set_timer(PATIENCE, partial(self._explain_row, message.row))
+
+    def _explain_row(self, row: int) -> None:
+        self._explain_timer = None
+        if self.session.ranking is not None:
+            self._explain(self.session, row)
 
     @work(thread=True, exclusive=True, group="explain", description="explain")
     def _explain(self, session: Session, row: int) -> None:

@@ -3,7 +3,7 @@
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from textual import events, on
+from textual import on
 from textual.app import ComposeResult
 from textual.containers import Vertical
 from textual.widgets import Static
@@ -21,6 +21,9 @@ class Choice:
     value: str
     words: str
     more: str = ""
+
+
+_CHARACTERS = {"space": " ", "minus": "-", "full_stop": "."}
 
 
 class Picker(Dialog[str]):
@@ -69,14 +72,12 @@ class Picker(Dialog[str]):
         view.styles.height = min(max(len(kept), 1) + 1, 16)
         self.query_one("#title", Static).update(self._title())
 
-    def on_key(self, event: events.Key) -> None:
-        if event.key == "backspace" and self.typed:
-            self.typed = self.typed[:-1]
-        elif event.character is not None and event.is_printable:
-            self.typed += event.character.casefold()
-        else:
-            return
-        event.stop()
+    def action_narrow(self, key: str) -> None:
+        """Take a letter to the ones typed before, or take one back.
+
+        A command, not a key event: Enter is one, and must not overtake letters typed before it.
+        """
+        self.typed = self.typed[:-1] if key == "backspace" else self.typed + _CHARACTERS.get(key, key)
         self._fill()
 
     def action_open(self) -> None:

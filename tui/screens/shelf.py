@@ -152,6 +152,7 @@ class ShelfScreen(Room):
     async def action_open(self) -> None:
         """Open the part under the cursor; from the search field go to the list."""
         if isinstance(self.focused, Input):
+            await self.typed_out()
             self.action_back()
             return
         row = self.query_one("#parts", LinesView).row

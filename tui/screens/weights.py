@@ -91,8 +91,9 @@ class WeightsScreen(Room):
         form.say(problems)
         return None if problems else weights
 
-    def action_keep_weights(self) -> None:
+    async def action_keep_weights(self) -> None:
         """Use these weights."""
+        await self.typed_out()
         weights = self._read()
         if weights is not None:
             self.desk.session = replace(self.session, weights=weights)
