@@ -14,7 +14,7 @@ def base_current(case: SwitchCase) -> Compared:
     """May its base take the highest base current?
 
     A sheet without a base rating vouches for the base currents of its own saturation tests; a tenth of the
-    collector rating is common practice.
+    collector rating is common practice (source `driver base`).
     """
     p = case.p
     grade = np.where(np.isnan(p.ib), Evidence.DERIVED, Evidence.GUARANTEED).astype(np.int8)

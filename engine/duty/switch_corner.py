@@ -1,4 +1,7 @@
-"""The on state at one supply corner: base current, forced gain and the on-voltage that is promised."""
+"""The on state at one supply corner: base current, forced gain and the on-voltage that is promised.
+
+Every quantity of a corner is at its own worst limit at once (source `wcca`).
+"""
 
 from collections.abc import Callable
 from dataclasses import dataclass, fields, replace

@@ -2,7 +2,7 @@
 
 Every saturation test (and the line between two neighbours) that reaches the collector current is a witness.
 A witness promises its voltage at its own forced beta, and at a larger one as far as the gain floor and the
-laws below carry. Witnesses combine by the kindest, since each is true.
+laws below carry (source `gummel-poon`). Witnesses combine by the kindest, since each is true.
 """
 
 from dataclasses import dataclass, fields
