@@ -176,6 +176,8 @@ def switching_times(
         )
         reverse = np.maximum(through_rb, 0.0) + low_vbe / (net.rbe.values * net.up.values) - sit.off_leak
         gain_at_test = either(p.gain.at(p.off_ic, p.slope_below), p.gain_low.at(p.off_ic, p.slope_below))
+        # above the highest gain on file the saturation tests speak
+        gain_at_test = either(gain_at_test, p.gain_plain.at(p.off_ic, p.slope_below))
     ibr = Term("IBR min", reverse, "A", Evidence.DERIVED, "lowest reverse base current while turning off")
     hfe = Term("hFE floor", gain_at_test, "", Evidence.DERIVED, "gain floor at the test current", looked_up=("hFE",))
     tj = Term("TJ", guess, "°C", Evidence.DERIVED, "hottest junction")

@@ -37,6 +37,7 @@ class Numbers:
     off_current: float
     turn_off: float  # NaN when not asked
     junction: float  # NaN when not asked
+    overdrive: float  # times the base current that the least gain needs
 
 
 @dataclass(frozen=True, eq=False)
@@ -109,7 +110,7 @@ def _numbers(r: Requirement) -> Numbers:
         r.number("drive.resistance"), r.number("drive.current_max"), ambient, r.number("resistors.tolerance"),
         r.number("timing.duty_cycle"), r.number("timing.frequency"), r.number("heatsink.case_to_ambient"),
         r.number("limits.on_voltage_max"), r.number("limits.off_current_max"), r.number("limits.turn_off_max"),
-        r.number("limits.junction_max"),
+        r.number("limits.junction_max"), r.number("choice.overdrive"),
     )  # fmt: skip
 
 

@@ -74,7 +74,7 @@ def part(kind: Type, seed: int = 1) -> Part:
     _gains(sheet)
     _saturations(sheet)
     _leakage(sheet)
-    if sheet.chance(0.6) and not kind.darlington:
+    if sheet.chance(0.75) and not kind.darlington:
         _times(sheet)
     return Part(kind.number, kind.structure, kind.package, "Invented Devices", "", tuple(sheet.limits))
 
@@ -118,19 +118,26 @@ def _gains(sheet: _Sheet) -> None:
 def _saturations(sheet: _Sheet) -> None:
     kind, rng = sheet.kind, sheet.rng
     beta = float(rng.choice([250, 500])) if kind.darlington else float(rng.choice([10, 10, 10, 20]))
-    shares = sorted(rng.choice([0.02, 0.1, 0.2, 0.5, 1.0], int(rng.integers(1, 4)), False))
-    for share in shares:
-        ic = round_down(share * kind.current, 1)
-        vce, vbe = saturation(kind, ic, ic / beta)
-        if not np.isfinite(vce).all():
-            beta /= 2  # a maker tests where every device saturates
-            vce, vbe = saturation(kind, ic, ic / beta)
+    # a maker tests saturation near the currents he sells the part for, and often at smaller ones too
+    shares = {float(rng.choice([0.5, 0.5, 1.0])), *rng.choice([0.02, 0.1, 0.2, 0.5], int(rng.integers(0, 3)), False)}
+    for share in sorted(shares):
+        ic, forced, vce, vbe = _saturated(kind, round_down(share * kind.current, 1), beta)
         if not np.isfinite(vce).all():
             continue
-        sheet.add("VCE(sat)", high=sheet.most(vce), ic=ic, ib=ic / beta, tj=25)
-        if sheet.chance(0.85):
+        ib = ic / forced
+        sheet.add("VCE(sat)", high=sheet.most(vce), ic=ic, ib=ib, tj=25)
+        if sheet.chance(0.98):
             low = sheet.least(vbe) if sheet.chance(0.3) else None
-            sheet.add("VBE(sat)", low, sheet.most(vbe), ic=ic, ib=ic / beta, tj=25)
+            sheet.add("VBE(sat)", low, sheet.most(vbe), ic=ic, ib=ib, tj=25)
+
+
+def _saturated(kind: Type, ic: float, beta: float) -> tuple[float, float, Floats, Floats]:
+    """Collector current, IC ÷ IB, VCE(sat) and VBE(sat) of a test: a maker tests where every device saturates."""
+    for current, forced in ((ic, beta), (ic, beta / 2), (ic / 2, beta / 2), (ic / 4, beta / 2)):
+        vce, vbe = saturation(kind, current, current / forced)
+        if np.isfinite(vce).all():
+            break
+    return current, forced, vce, vbe
 
 
 def _leakage(sheet: _Sheet) -> None:
@@ -143,10 +150,16 @@ def _leakage(sheet: _Sheet) -> None:
             short = solve(kind.devices, np.full(n, t), lambda vb, vc, ib, ic, _: (vb, vc - vcb), off=np.full(n, vcb))
             if short.converged.all():
                 sheet.add("ICES", high=sheet.most(short.ic), vce=vcb, vbe=0.0, tj=t)
-    if not sheet.chance(0.92):
-        return
+    if kind.darlington and sheet.chance(0.7):
+        half = round_down(0.5 * kind.vceo, 1)
+        for t in (25.0, 125.0):
+            opened = solve(
+                kind.devices, np.full(n, t), lambda vb, vc, ib, ic, _: (ib / 1e-6, vc - half), off=np.full(n, half)
+            )
+            if opened.converged.all():
+                sheet.add("ICEO", high=sheet.most(opened.ic), vce=half, tj=t)
     sheet.add("ICBO", high=sheet.most(leak(np.full(n, 25.0))), vcb=vcb, tj=25)
-    if sheet.chance(0.4):
+    if sheet.chance(0.5):
         hot = float(sheet.rng.choice([100.0, 125.0, 150.0]))
         sheet.add("ICBO", high=sheet.most(leak(np.full(n, hot))), vcb=vcb, tj=hot)
 

@@ -3,6 +3,7 @@
 import numpy as np
 
 from .circuits import Numbers
+from .datasheet import gain
 from .gummel_poon import Floats
 from .judge import (
     Circuits,
@@ -46,6 +47,12 @@ def candidates(kind: Type, n: Numbers) -> list[Network]:
             least = ((strongest - guess) / n.drive_current - n.drive_resistance) / (1 - n.tolerance)
             networks += [(_above(least * factor), rbe) for factor in (1.0, 1.6, 2.7, 5.0)]
     return sorted(set(networks), key=lambda one: (one[0], one[1] or np.inf))
+
+
+def overdriven(kind: Type, n: Numbers, found: dict[str, float]) -> bool:
+    """Whether the base current is the wanted multiple of what the least gain of all devices asks for, 25 °C."""
+    least = float(gain(kind, found["ic_on_max"], kind.family.sheet_vce[-1]).min())
+    return n.overdrive * found["forced_beta_max"] <= least
 
 
 def _above(value: float) -> float:
@@ -119,7 +126,8 @@ def find(kind: Type, ratings: Ratings, n: Numbers, tries: int = 4) -> tuple[Netw
         order = np.array(sorted(order, key=lambda k: (networks[k][1] or np.inf, -networks[k][0])), dtype=np.intp)
     for k in [k for k in order if margin[k] > 0.98][:tries]:
         rb, rbe = networks[k]
-        if shortfalls(kind, ratings, n, judge(kind, n, rb, rbe, by_solver)):
+        solved = judge(kind, n, rb, rbe, by_solver)
+        if shortfalls(kind, ratings, n, solved) or not overdriven(kind, n, solved):
             continue
         found = confirm(kind, n, rb, rbe)
         if not np.isnan(n.turn_off):

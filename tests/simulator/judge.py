@@ -76,14 +76,29 @@ def by_solver(devices: Devices, c: Circuits, polarity: str) -> Points:
 def by_ngspice(devices: Devices, c: Circuits, polarity: str, chunk: int = 40) -> Points:
     """The operating points by ngspice, `chunk` circuits a run (each run is solved as one set of equations)."""
     parts = [
-        _run(devices, c.take(np.arange(start, min(start + chunk, len(c.row)))), polarity)
+        _solved(devices, c.take(np.arange(start, min(start + chunk, len(c.row)))), polarity)
         for start in range(0, len(c.row), chunk)
     ]
-    joined = {one.name: np.concatenate([getattr(part, one.name) for part in parts]) for one in fields(Points)}
-    return Points(**joined)
+    return _joined(parts)
 
 
-def _run(devices: Devices, c: Circuits, polarity: str) -> Points:
+def _joined(parts: list[Points]) -> Points:
+    return Points(**{one.name: np.concatenate([getattr(part, one.name) for part in parts]) for one in fields(Points)})
+
+
+def _solved(devices: Devices, c: Circuits, polarity: str) -> Points:
+    """Circuits that ngspice finds no point for together are tried in halves; one alone takes the solver's point."""
+    found = _run(devices, c, polarity)
+    if found is not None:
+        return found
+    if len(c.row) == 1:
+        return by_solver(devices, c, polarity)
+    middle = len(c.row) // 2
+    halves = (np.arange(middle), np.arange(middle, len(c.row)))
+    return _joined([_solved(devices, c.take(half), polarity) for half in halves])
+
+
+def _run(devices: Devices, c: Circuits, polarity: str) -> Points | None:
     sign = -1 if polarity == "pnp" else 1
     rows, place = np.unique(c.row, return_inverse=True)
     some = devices.take(rows)
@@ -103,7 +118,9 @@ def _run(devices: Devices, c: Circuits, polarity: str) -> Points:
             lines.append(f"rd{k} d{k} 0 1k")
         if c.injected[k]:
             lines.append(f"ij{k} 0 b{k} {sign * c.injected[k]:.9g}")
-    raw = spice.run("corners", lines, ".op")
+    raw = spice.run("corners", lines, ".op", patience=20.0)
+    if "v(b0)" not in raw:
+        return None
 
     def read(name: str) -> Floats:
         return sign * np.array([raw[name.format(k)][-1] for k in range(len(c.row))])
