@@ -5,7 +5,8 @@ device (method: `gain chord`). Below the lowest point the gain falls no faster t
 above the highest nothing is known.
 """
 
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -60,10 +61,12 @@ class Curve:
 
     def take(self, rows: "slice | NDArray[np.intp]") -> "Curve":
         """The curves of some parts; a slice gives views."""
-        return Curve(
-            self.x0[rows], self.y0[rows], self.top[rows], self.start[:, rows], self.length[:, rows], self.slope[:, rows],
-            self.vce[rows], self.grades[rows],
-        )  # fmt: skip
+        return Curve(*(columns(getattr(self, one.name), rows) for one in fields(self)))
+
+
+def columns(array: NDArray[Any], rows: "slice | NDArray[np.intp]") -> NDArray[Any]:
+    """Some parts of an array whose last axis is the parts."""
+    return array[..., rows] if isinstance(rows, slice) else np.take(array, rows, axis=-1)
 
 
 def _merge_equal(x: Floats, y: Floats) -> None:

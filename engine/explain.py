@@ -43,7 +43,7 @@ def explain_rows(
     for start in range(0, len(rows), BLOCK):
         some = np.asarray(rows[start : start + BLOCK], dtype=np.intp)
         duty = duties()[requirement.duty]
-        judged = duty.judge(requirement, prepared(shelf).take(some), shelf.take(some), network)
+        judged = duty.judge(requirement, prepared(shelf).take(some), network)
         teller = _Teller(requirement, judged, duty.cautions(requirement), chosen_here=network is None, working=working)
         for i, row in enumerate(some):
             yield teller.tell(i, str(shelf.names[row]), shelf.structure_word(int(row)), str(shelf.package[row]))

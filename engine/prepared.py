@@ -11,7 +11,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from .curves import Curve
+from .curves import Curve, columns
 from .evidence import Evidence, Grades
 from .part import STRUCTURES
 from .physics.constants import ROOM, ROOM_KELVIN, ZERO_CELSIUS, thermal_voltage
@@ -37,6 +37,7 @@ class Prepared:
     """Columns (n,) and points (k, n) of a shelf, ready to judge."""
 
     known: Mask  # structure stated
+    package: NDArray[np.object_]  # as the sheet writes it
     pnp: Mask
     darlington: Mask
     prebiased: Mask
@@ -96,7 +97,7 @@ class Prepared:
         cut: dict[str, Any] = {}
         for one in fields(self):
             value = getattr(self, one.name)
-            cut[one.name] = value.take(rows) if isinstance(value, Curve) else value[..., rows]
+            cut[one.name] = value.take(rows) if isinstance(value, Curve) else columns(value, rows)
         return Prepared(**cut)
 
 
@@ -116,12 +117,13 @@ def prepare(shelf: Shelf) -> Prepared:
         return Prepared(**columns)
 
 
-def _structure(shelf: Shelf) -> dict[str, Mask]:
+def _structure(shelf: Shelf) -> dict[str, NDArray[Any]]:
     code = shelf.structure
     pnp = [i for i, word in enumerate(STRUCTURES) if word.startswith("pnp")]
     darlington = [i for i, word in enumerate(STRUCTURES) if word.endswith("darlington")]
     prebiased = [i for i, word in enumerate(STRUCTURES) if word.endswith("prebiased")]
     return {
+        "package": shelf.package,
         "known": code >= 0,
         "pnp": np.isin(code, pnp),
         "darlington": np.isin(code, darlington),

@@ -9,7 +9,6 @@ from numpy.typing import NDArray
 from ..check import Outcome
 from ..prepared import Prepared
 from ..requirement import Field, Problem, Requirement, Value
-from ..shelf import Shelf
 
 Floats = NDArray[np.float64]
 
@@ -31,6 +30,6 @@ class Duty:
     name: str
     fields: tuple[Field, ...]
     complete: Callable[[dict[str, Value]], tuple[dict[str, Value], list[Problem], list[str]]]
-    judge: Callable[[Requirement, Prepared, Shelf, Mapping[str, float] | None], Judged]
+    judge: Callable[[Requirement, Prepared, Mapping[str, float] | None], Judged]
     eligible: Callable[[Requirement, Prepared], NDArray[np.bool_]]  # False: the wrong kind of part, not worth a design
     cautions: Callable[[Requirement], tuple[str, ...]]

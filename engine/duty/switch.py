@@ -10,7 +10,6 @@ from ..policy import POLICIES
 from ..prepared import Prepared
 from ..ranking import Status
 from ..requirement import Requirement
-from ..shelf import Shelf
 from .base import Duty, Judged
 from .switch_bounds import Bounds, bounds
 from .switch_case import SwitchCase
@@ -23,16 +22,16 @@ Floats = NDArray[np.float64]
 RETRIES = (1.0, 0.75, 0.5, 0.25, 0.0)  # places of the window where a stiffer network is tried
 
 
-def judge(req: Requirement, p: Prepared, shelf: Shelf, network: Mapping[str, float] | None = None) -> Judged:
+def judge(req: Requirement, p: Prepared, network: Mapping[str, float] | None = None) -> Judged:
     """Judge all parts, with the network chosen for each or, where `network` gives rb (and rbe), with that one."""
     with np.errstate(all="ignore"):
         sit = situation(req)
         n = needs(sit, p)
         if network is not None:
             net = _given(sit, p, n, network)
-            outcomes, b = _outcomes(sit, p, shelf, n, net)
+            outcomes, b = _outcomes(sit, p, n, net)
         else:
-            net, outcomes, b = _best(sit, p, shelf, n)
+            net, outcomes, b = _best(sit, p, n)
         return Judged(outcomes, _network_columns(net), _bound_columns(b, len(p)), p.ic / float(sit.ic_max.values))
 
 
@@ -42,31 +41,29 @@ def _given(sit: Situation, p: Prepared, n: Needs, network: Mapping[str, float]) 
     return Network(np.full(len(p), network["rb"]), rbe, low, high)
 
 
-def _outcomes(sit: Situation, p: Prepared, shelf: Shelf, n: Needs, net: Network) -> tuple[tuple[Outcome, ...], Bounds]:
+def _outcomes(sit: Situation, p: Prepared, n: Needs, net: Network) -> tuple[tuple[Outcome, ...], Bounds]:
     b = bounds(sit, p, n, net)
-    case = SwitchCase(sit.requirement, sit, p, shelf, b, POLICIES[sit.requirement.word("choice.derating") or "none"])
+    case = SwitchCase(sit.requirement, sit, p, b, POLICIES[sit.requirement.word("choice.derating") or "none"])
     found = (run(one, case, len(p)) for one in checks("switch"))
     return tuple(one for one in found if one is not None), b
 
 
-def _best(sit: Situation, p: Prepared, shelf: Shelf, n: Needs) -> tuple[Network, tuple[Outcome, ...], Bounds]:
+def _best(sit: Situation, p: Prepared, n: Needs) -> tuple[Network, tuple[Outcome, ...], Bounds]:
     """The chosen network; where only the network's own checks fail, stiffer ones are tried."""
     plain = design(sit, p, n)
-    outcomes, b = _outcomes(sit, p, shelf, n, plain)
+    outcomes, b = _outcomes(sit, p, n, plain)
     rows = np.flatnonzero(_only_network(outcomes))
     if not len(rows):
         return plain, outcomes, b
     worst = _worst(outcomes)[rows]
-    net = _stiffer(sit, p.take(rows), shelf.take(rows), n.take(rows), plain.take(rows), worst)
+    net = _stiffer(sit, p.take(rows), n.take(rows), plain.take(rows), worst)
     if net is None:
         return plain, outcomes, b
     better = plain.put(rows, net)
-    return better, *_outcomes(sit, p, shelf, n, better)
+    return better, *_outcomes(sit, p, n, better)
 
 
-def _stiffer(
-    sit: Situation, p: Prepared, shelf: Shelf, n: Needs, plain: Network, worst: NDArray[np.int8]
-) -> Network | None:
+def _stiffer(sit: Situation, p: Prepared, n: Needs, plain: Network, worst: NDArray[np.int8]) -> Network | None:
     """For parts that only their network fails: the first stiffer one that does better; None where none does."""
     net, found = plain, False
     still_open = np.ones(len(p), dtype=bool)
@@ -74,7 +71,7 @@ def _stiffer(
         if not still_open.any():
             break
         other = stiffest(sit, p, n, plain, place)
-        outcomes, _ = _outcomes(sit, p, shelf, n, net.where(still_open, other))
+        outcomes, _ = _outcomes(sit, p, n, net.where(still_open, other))
         better = still_open & (_worst(outcomes) < worst)
         net = net.where(better, other)
         worst = np.where(better, _worst(outcomes), worst)

@@ -8,7 +8,6 @@ from ..formula import Term
 from ..policy import Policy
 from ..prepared import Prepared
 from ..requirement import Requirement
-from ..shelf import Shelf
 from .switch_bounds import Bounds
 from .switch_situation import Situation
 
@@ -20,7 +19,6 @@ class SwitchCase:
     requirement: Requirement
     sit: Situation
     p: Prepared
-    shelf: Shelf
     b: Bounds
     policy: Policy
 

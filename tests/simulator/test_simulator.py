@@ -70,7 +70,9 @@ def test_workable_pairs_are_not_thrown_away(capsys: pytest.CaptureFixture[str]) 
     tally = compare(World.make(types=24, devices=20, requirements=24, seed=31))
     share = tally.accepted / tally.feasible
     with capsys.disabled():
-        print(f"\nworkable pairs {tally.feasible}, called fits {tally.accepted} ({share:.0%}); false fits {len(tally.false)}")
+        print(
+            f"\nworkable pairs {tally.feasible}, called fits {tally.accepted} ({share:.0%}); false fits {len(tally.false)}"
+        )
     assert not tally.false and not tally.broken
     assert share >= 0.6
 
