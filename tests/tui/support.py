@@ -139,6 +139,22 @@ class FakeSource:
         return f"Saved: {len(rows)} parts"
 
 
+class BigSource(FakeSource):
+    """The invented parts over and over."""
+
+    def __init__(self, n: int) -> None:
+        super().__init__()
+        self.n = n
+
+    def shelf(self) -> Shelf:
+        import numpy as np
+
+        small = shelf_of(PARTS)
+        big = small.take(np.arange(self.n) % len(PARTS))
+        big.names[:] = [f"T-{i:06}" for i in range(self.n)]
+        return big
+
+
 class Pilot:
     """Presses keys and waits until the screen has come to rest: no worker runs, no timer is due."""
 
