@@ -19,6 +19,7 @@ from .errors import NewerShelf, NotAShelf, NotWritable, StoreError, mended
 from .schema import APPLICATION_ID, VERSION, migrate
 
 WAIT = 5.0  # seconds that a session waits for another one's write
+AT_ONCE = 1 << 26  # bytes: of a longer file the limits, of which a ranking reads only the columns, are checked later
 
 
 def now() -> str:
@@ -31,6 +32,7 @@ class Store:
 
     def __init__(self, path: Path, conn: sqlite3.Connection, *, read_only: bool) -> None:
         self.path, self.conn, self.read_only = path, conn, read_only
+        self._limits_checked = path.stat().st_size <= AT_ONCE
 
     @classmethod
     def open(cls, path: Path, *, create: bool = True, wait: float = WAIT) -> "Store":
@@ -77,6 +79,9 @@ class Store:
         if self.read_only:
             raise NotWritable(f"{self.path} is open read-only; check the rights of the file and its folder")
         with mended(self.path):
+            if not self._limits_checked:
+                _sound(self.path, self.conn)
+                self._limits_checked = True
             self.conn.execute("BEGIN IMMEDIATE")
             try:
                 self.conn.execute("UPDATE actor SET who = ? WHERE id = 1", (who,))
@@ -234,15 +239,25 @@ def _inspect(path: Path) -> None:
     try:
         (owner,) = probe.execute("PRAGMA application_id").fetchone()
         (version,) = probe.execute("PRAGMA user_version").fetchone()
-        tables = probe.execute("SELECT count(*) FROM sqlite_master").fetchone()[0]
-        if owner != APPLICATION_ID and (owner or tables):
+        (filled,) = probe.execute("SELECT count(*) FROM sqlite_schema").fetchone()
+        if owner != APPLICATION_ID and (owner or filled):
             raise NotAShelf(f"{path} is another program's database (application id {owner:#x}); name another file")
         if version > VERSION:
             raise NewerShelf(
                 f"{path} was written by a newer version (schema {version}, this one knows {VERSION}); update"
             )
-        (verdict,) = probe.execute("PRAGMA quick_check(1)").fetchone()
-        if verdict != "ok":
-            raise NotAShelf(f"{path} is damaged ({verdict}); restore a backup; the file was left as it is")
+        tables: list[str] = []
+        if path.stat().st_size > AT_ONCE:
+            names = probe.execute("SELECT name FROM sqlite_schema WHERE type = 'table' AND name <> 'limit'")
+            tables = [name for (name,) in names]
+        _sound(path, probe, tables)
     finally:
         probe.close()
+
+
+def _sound(path: Path, conn: sqlite3.Connection, tables: Sequence[str] = ()) -> None:
+    """Refuse a file with damaged pages, in some tables or anywhere."""
+    for which in tables or ("1",):
+        (verdict,) = conn.execute(f"PRAGMA quick_check({which})").fetchone()
+        if verdict != "ok":
+            raise NotAShelf(f"{path} is damaged ({verdict}); restore a backup; the file was left as it is")

@@ -288,3 +288,24 @@ def test_a_backup_opens_and_holds_the_same(path: Path, tmp_path: Path) -> None:
         with Store.open(tmp_path / "copy.shelf") as copy:
             assert same(copy.shelf(), store.shelf()) and copy.stock() == store.stock() and copy.check() == []
     assert sorted(one.name for one in tmp_path.iterdir() if one.name.startswith(".")) == []
+
+
+def test_damaged_limits_of_a_long_file_are_found_before_a_write(path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    """A ranking reads the columns only; the rows behind them are checked before anything is written."""
+    with Store.open(path) as store:
+        land(store, arrivals(400, 1))
+        store.shelf()
+        (root,) = store.conn.execute("SELECT rootpage FROM sqlite_schema WHERE name = 'limit'").fetchone()
+        (size,) = store.conn.execute("PRAGMA page_size").fetchone()
+        store.conn.execute("PRAGMA wal_checkpoint(TRUNCATE)")
+    data = bytearray(path.read_bytes())
+    data[(root - 1) * size : (root - 1) * size + 200] = b"\xff" * 200
+    path.write_bytes(data)
+    with pytest.raises(NotAShelf, match="damaged"):
+        Store.open(path)
+    monkeypatch.setattr("db.store.AT_ONCE", 1000)
+    with Store.open(path) as store:
+        assert len(store.shelf()) == 400
+        with pytest.raises(NotAShelf, match="damaged"):
+            store.move("receive", "ZQ-00000", 3)
+    assert path.read_bytes() == bytes(data)
