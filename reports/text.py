@@ -2,17 +2,18 @@
 
 from collections.abc import Sequence
 
-_FORMULA = ("=", "+", "-", "@", "\t", "\r")
+_FORMULA = ("=", "+", "-", "@")
 
 
 def neutral(text: str) -> str:
-    """A cell that a spreadsheet shows instead of running."""
-    return f"'{text}" if text.startswith(_FORMULA) else text
+    """A cell on one line that a spreadsheet shows instead of running."""
+    line = " ".join(text.split())
+    return f"'{line}" if line.startswith(_FORMULA) else line
 
 
 def markdown_cell(text: str) -> str:
     """A cell of a Markdown table."""
-    return text.replace("\\", "\\\\").replace("|", "\\|").replace("\n", " ").replace("<", "&lt;")
+    return " ".join(text.split()).replace("\\", "\\\\").replace("|", "\\|").replace("<", "&lt;")
 
 
 def markdown_row(cells: Sequence[str]) -> str:

@@ -91,7 +91,9 @@ def _off_current(sit: Situation, p: Prepared, net: NetworkTerms, tj: Term) -> Te
     vb = drive.base_voltage_off(
         V_low=sit.off_level, RB=rb, RBE=net.rbe, R_drive=net.r_drive, I_base=into_base, up=net.up, down=net.down
     )
-    floor_i = Term("I floor", p.floor_i, "A", Evidence.DERIVED, "current of the junction floor", looked_up=("IC",))
+    floor_i = Term(
+        "I floor", p.floor_i, "A", Evidence.DERIVED, "current of the junction floor", "a tenth of IC", looked_up=("IC",)
+    )
     floor_v = leakage.floor_hot(
         V_floor=Term(
             "V floor",
@@ -103,14 +105,15 @@ def _off_current(sit: Situation, p: Prepared, net: NetworkTerms, tj: Term) -> Te
         ),
         TJ=tj,
     )
-    vt = Term("VT", np.asarray(thermal_voltage(hot)), "V", Evidence.DERIVED, "kT/q")
+    vt = Term("VT", np.asarray(thermal_voltage(hot)), "V", Evidence.DERIVED, "kT/q", "physical constants")
     return leakage.off_current(I_leak=leak, I_floor=floor_i, VB=vb, V_floor=floor_v, VT=vt)
 
 
 def _off_voltage(sit: Situation) -> Term:
     if sit.v_off is not None:
         return sit.v_off
-    return Term("VCE off max", np.asarray(np.nan), "V", meaning="not bounded: nothing clamps the coil")
+    return Term("VCE off max", np.asarray(np.nan), "V", meaning="not bounded: nothing clamps the coil",
+                source="requirement")  # fmt: skip
 
 
 def _least_current(sit: Situation, vce_on: Term) -> Term:

@@ -32,7 +32,8 @@ class SwitchCase:
         """A limit at the share that the policy allows."""
         if share == 1:
             return term
-        return Term(f"{share:g}·{term.symbol}", term.values * share, term.unit, term.evidence, inputs={"full": term})
+        return Term(f"{share:g}·{term.symbol}", term.values * share, term.unit, term.evidence,
+                    source=f"policy {self.policy.name}", inputs={"full": term})  # fmt: skip
 
     @property
     def tj_limit(self) -> Term:

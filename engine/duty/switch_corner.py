@@ -64,10 +64,10 @@ def at_corner(sit: Situation, p: Prepared, corner: Corner, need: Need, net: Netw
     needed = drive.base_current_needed(IC=corner.ic, beta_allowed=beta, k_OD=k_od, hFE=floor)
     if inrush:
         needed = Term("IB needed", need.ib, "A", beta.evidence, "base current that keeps the cold lamp's switch "
-                      "saturated; none where the safe area takes the inrush", looked_up=("VCE(sat)",))  # fmt: skip
+                      "saturated; none where the safe area takes it", "IC ÷ β allowed", looked_up=("VCE(sat)",))  # fmt: skip
     upper = _base_current(corner, net, need.vbe)
     vbe_at_upper = vbe_highest(sit, p, ic, upper)
-    vbe = vbe_term(sit, p, ic, vbe_at_upper)
+    vbe = vbe_term(sit, p, ic, needed, vbe_at_upper)
     traced = drive.base_current(
         "IB min", "lowest base current", V_drive=corner.drive, VBE=vbe, RB=net.rb, RB_factor=net.up,
         R_drive=net.r_drive, RBE=net.rbe, RBE_factor=net.down,
@@ -94,10 +94,13 @@ def _base_current(corner: Corner, net: NetworkTerms, vbe: Floats) -> Floats:
         )
 
 
-def vbe_term(sit: Situation, p: Prepared, ic: float, cold: Floats) -> Term:
+def vbe_term(sit: Situation, p: Prepared, ic: float, ib: Term, cold: Floats) -> Term:
+    """VBE at (IC, IB) as a term; `cold` is its value at the coldest, `ib` the current it was sought with."""
     room = cold - junction.COLD_SHIFT * np.where(p.darlington, 2.0, 1.0) * max(ROOM - sit.number("ambient.min"), 0.0)
-    at_room = junction.vbe_at_room.traced(room, p.vbe_grade, ("VBE(sat)",), IC=given("IC", ic, "A"))
-    junctions = Term("junctions", np.where(p.darlington, 2.0, 1.0), "", meaning="base–emitter junctions in series")
+    at_room = junction.vbe_at_room.traced(room, p.vbe_grade, ("VBE(sat)",), IC=given("IC", ic, "A"),
+                                          IB=replace(ib, evidence=Evidence.GUARANTEED))  # fmt: skip
+    junctions = Term("junctions", np.where(p.darlington, 2.0, 1.0), "", meaning="base–emitter junctions in series",
+                     source="structure")  # fmt: skip
     coldest = given("T cold", sit.number("ambient.min"), "°C", "coldest ambient")
     return junction.vbe_cold(VBE=at_room, junctions=junctions, T_cold=coldest)
 

@@ -43,7 +43,8 @@ def heat_up(
     """Losses and temperature, with the junction taken at `guess` where a smaller VBE is the unkind one."""
     ic = float(sit.ic_max.values)
     hottest = given("TA max", sit.number("ambient.max"), "°C", "hottest ambient")
-    tj_guess = Term("TJ taken", guess, "°C", Evidence.DERIVED, "junction temperature at which VBE is smallest")
+    tj_guess = Term("TJ taken", guess, "°C", Evidence.DERIVED, "junction temperature at which VBE is smallest",
+                    "every other demand just met")  # fmt: skip
     floor_v = Term(
         "V floor", p.floor_v, "V", Evidence.DERIVED, "junction floor at 25 °C", "VBE minimum on file or common practice"
     )
@@ -57,7 +58,7 @@ def heat_up(
         R_drive=net.r_drive, RBE=net.rbe, RBE_factor=net.up,
     )  # fmt: skip
     driver = drive.drive_current(V_drive=sit.drive_max, VBE=vbe_min, RB=net.rb, RB_factor=net.down, R_drive=net.r_drive)
-    vbe_top = vbe_term(sit, p, ic, vbe_highest(sit, p, ic, ib_max.values))
+    vbe_top = vbe_term(sit, p, ic, ib_max, vbe_highest(sit, p, ic, ib_max.values))
     v_room = _worst_room_voltage(corners)
     t_on, t_off = switching_times(sit, p, n, net, corners, ib_max, vbe_min, guess)
     rth, power_rating = _resistance(sit, p)
@@ -78,7 +79,13 @@ def heat_up(
         "TJ max", np.minimum(tj.values, 1e3), "°C", tj.evidence, tj.meaning, formula=tj.formula, inputs=tj.inputs
     )
     hot = saturation.hot_factor(TJ=settled)
-    cold = Term("cold rise", cold_rise(sit, p), "V", meaning="what a Darlington gains when cold")
+    cold = Term(
+        "cold rise",
+        cold_rise(sit, p),
+        "V",
+        meaning="what a Darlington gains when cold",
+        source="2.5 mV/K of one junction",
+    )
     vce_on = saturation.on_voltage(VCE_sat=v_room, hot=hot, cold_rise=cold)
     on = thermal.conduction_loss(VCE=vce_on, IC=sit.ic_max, VBE=vbe_top, IB=ib_max)
     mean = thermal.mean_loss(share=share, P_on=on, P_edges=edges)
@@ -162,10 +169,10 @@ def switching_times(
     worst = corners[0]
     gain = n.corners[0].gain_stated
     overdrive = Term("overdrive", worst.ib_min.values * gain / worst.ic.values, "", Evidence.DERIVED,
-                     "base current over what the gain floor needs", looked_up=("hFE",))  # fmt: skip
+                     "base current over what the gain floor needs", "IB·hFE ÷ IC", looked_up=("hFE",))  # fmt: skip
     test = _test_terms(p, "on")
     ib = Term("IB min", np.min(np.broadcast_arrays(*(c.ib_min.values for c in corners)), axis=0), "A", worst.ib_min.evidence,
-              "lowest base current")  # fmt: skip
+              "lowest base current", "the weaker supply corner")  # fmt: skip
     t_on = speed.turn_on_time(t_test=test["time"], IC=sit.ic_max, IC_test=test["ic"], V=v, V_test=test["vcc"],
                               IB_test=test["ib"], IB=ib, overdrive=overdrive)  # fmt: skip
     test = _test_terms(p, "off")
@@ -178,9 +185,18 @@ def switching_times(
         gain_at_test = either(p.gain.at(p.off_ic, p.slope_below), p.gain_low.at(p.off_ic, p.slope_below))
         # above the highest gain on file the saturation tests speak
         gain_at_test = either(gain_at_test, p.gain_plain.at(p.off_ic, p.slope_below))
-    ibr = Term("IBR min", reverse, "A", Evidence.DERIVED, "lowest reverse base current while turning off")
-    hfe = Term("hFE floor", gain_at_test, "", Evidence.DERIVED, "gain floor at the test current", looked_up=("hFE",))
-    tj = Term("TJ", guess, "°C", Evidence.DERIVED, "hottest junction")
+    ibr = Term("IBR min", reverse, "A", Evidence.DERIVED, "lowest reverse base current while turning off",
+               "(VBE − V low) ÷ RB + VBE ÷ RBE − leakage of the driver, VBE a decade below the lightest load")  # fmt: skip
+    hfe = Term(
+        "hFE floor",
+        gain_at_test,
+        "",
+        Evidence.DERIVED,
+        "gain floor at the test current",
+        "hFE limits on file",
+        looked_up=("hFE",),
+    )
+    tj = Term("TJ", guess, "°C", Evidence.DERIVED, "hottest junction", "every other demand just met")
     t_off = speed.turn_off_time(
         t_test=test["time"], IB=ib_max, IBR=ibr, IC=sit.ic_max, V=v, IC_test=test["ic"], IB_test=test["ib"],
         IB2_test=test["ib2"], V_test=test["vcc"], hFE=hfe, TJ=tj,
