@@ -7,7 +7,7 @@ import numpy as np
 from engine import show
 from engine.ranking import Ranking, Verdict
 
-from .text import markdown_row, neutral
+from .text import markdown_row, markdown_text, neutral
 
 Cell = Callable[[Ranking, int], float | str]
 
@@ -47,7 +47,11 @@ def text_table(ranking: Ranking, rows: Sequence[int]) -> str:
 def markdown_table(ranking: Ranking, rows: Sequence[int]) -> str:
     """The same as a Markdown table under its title."""
     place = places(ranking)
-    lines = [f"# {ranking.requirement.title or 'Ranking'}", "", markdown_row(["#", *(h for h, _, _ in COLUMNS)])]
+    lines = [
+        f"# {markdown_text(ranking.requirement.title or 'Ranking')}",
+        "",
+        markdown_row(["#", *(h for h, _, _ in COLUMNS)]),
+    ]
     lines.append(markdown_row(["---"] * (len(COLUMNS) + 1)))
     lines += [markdown_row([str(place[row]), *(_shown(ranking, row, column) for column in COLUMNS)]) for row in rows]
     return "\n".join(lines) + "\n"

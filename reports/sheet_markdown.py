@@ -1,7 +1,7 @@
 """A calculation sheet as Markdown."""
 
 from .sheet import Block, Bullets, Heading, Paragraph, Sheet, blocks
-from .text import markdown_row
+from .text import markdown_row, markdown_text
 
 
 def sheet_markdown(sheet: Sheet) -> str:
@@ -11,11 +11,11 @@ def sheet_markdown(sheet: Sheet) -> str:
 
 def _block(block: Block) -> str:
     if isinstance(block, Heading):
-        return f"{'#' * block.depth} {block.text}"
+        return f"{'#' * block.depth} {markdown_text(block.text)}"
     if isinstance(block, Paragraph):
-        return block.text
+        return markdown_text(block.text)
     if isinstance(block, Bullets):
-        return "\n".join(f"- {item}" for item in block.items)
+        return "\n".join(f"- {markdown_text(item)}" for item in block.items)
     lines = [
         markdown_row(block.head),
         markdown_row(["---"] * len(block.head)),

@@ -11,7 +11,7 @@ from engine.ranking import Explanation, Ranking
 from .program import program
 from .ranking_json import ranking_object, requirement_object
 from .ranking_table import csv_table
-from .text import markdown_row
+from .text import markdown_row, markdown_text
 
 
 @dataclass(frozen=True, eq=False)
@@ -41,7 +41,7 @@ def shortlist_csv(shortlist: Shortlisted) -> str:
 def shortlist_markdown(shortlist: Shortlisted) -> str:
     """The shortlist as Markdown: what was asked, what was found, what to mind."""
     ranking = shortlist.ranking
-    lines = [f"# Shortlist: {ranking.requirement.title or ranking.requirement.duty}", ""]
+    lines = [f"# Shortlist: {markdown_text(ranking.requirement.title or ranking.requirement.duty)}", ""]
     lines.append(f"{program()}, {shortlist.date}, policy {ranking.policy}, shelf of {len(ranking.shelf)} parts "
                  f"({ranking.shelf.fingerprint}).")  # fmt: skip
     lines += ["", markdown_row(["part", "package", "verdict", "evidence", "network", "on hand", "reserved"])]
@@ -51,7 +51,13 @@ def shortlist_markdown(shortlist: Shortlisted) -> str:
         cells = [told.part, told.package, told.verdict, told.evidence, told.network_says, str(shelf.stock[row])]
         lines.append(markdown_row([*cells, str(shelf.reserved[row])]))
     for _, told in shortlist.rows:
-        lines += ["", f"## {told.part}", "", f"{told.says[0].upper()}{told.says[1:]}.", ""]
+        lines += [
+            "",
+            f"## {markdown_text(told.part)}",
+            "",
+            f"{markdown_text(told.says[0].upper() + told.says[1:])}.",
+            "",
+        ]
         lines.append(markdown_row(["check", "status", "value", "limit", "headroom"]))
         lines.append(markdown_row(["---"] * 5))
         for one in told.checks:
@@ -59,7 +65,11 @@ def shortlist_markdown(shortlist: Shortlisted) -> str:
             cells = [one.name, one.status, show.quantity(one.value, one.unit), show.quantity(one.limit, one.unit), room]
             lines.append(markdown_row(cells))
     lines += ["", "## Requirement", ""]
-    lines += [f"- {key}: {value}" for key, value in requirement_object(ranking).items() if value not in ([], "")]
+    lines += [
+        f"- {key}: {markdown_text(str(value))}"
+        for key, value in requirement_object(ranking).items()
+        if value not in ([], "")
+    ]
     cautions: Sequence[str] = shortlist.rows[0][1].cautions if shortlist.rows else ()
-    lines += ["", "## Cautions", "", *(f"- {one}" for one in cautions)]
+    lines += ["", "## Cautions", "", *(f"- {markdown_text(one)}" for one in cautions)]
     return "\n".join(lines) + "\n"
