@@ -24,8 +24,8 @@ def leakage_most(v: float, t: Floats, test_v: Floats, test_t: Floats, test_i: Fl
     """Highest collector leakage at voltage `v` and `t` °C (n,) from leakage maximums (k, n). [A]
 
     Each limit grows by the doubling rule from its own temperature; a limit at a hotter test holds as it
-    stands; between a cooler and a hotter limit the chord of log I over 1/T holds (source `leakage arrhenius`). The kindest bound wins,
-    since each is true. A test at a lower voltage is scaled with the voltage and the multiplication factor
+    stands; between a cooler and a hotter limit the chord of log I over 1/T holds (source `leakage arrhenius`).
+    The kindest bound wins, since each is true. A test at a lower voltage is scaled with the voltage and the multiplication factor
     1/(1 − (V/VBR)³) of the junction, up to VCEO. NaN: none.
     """
     multiplied = v / test_v / (1 - (v / (JUNCTION_OVER_VCEO * vceo)) ** 3)
