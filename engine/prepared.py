@@ -86,8 +86,9 @@ class Prepared:
     off_ib: Floats
     off_ib2: Floats
     off_vcc: Floats
-    soa_v: Floats  # (k, n) corners of the safe area for the longest pulse on file, rising VCE
+    soa_v: Floats  # (k, n) corners of the safe area, rising VCE: for direct current, else for the longest pulse on file
     soa_i: Floats
+    soa_dc: Mask  # the corners hold for direct current
 
     def __len__(self) -> int:
         return len(self.ic)
@@ -345,14 +346,18 @@ def _one_time(
     return columns
 
 
-def _safe_area(shelf: Shelf) -> dict[str, Floats]:
+def _safe_area(shelf: Shelf) -> dict[str, NDArray[Any]]:
     """Corners of the safe area, those of the longest pulse on file where there are several."""
     soa = shelf.points["SOA"]
     longest = np.where(np.isnan(soa["t"]), np.inf, soa["t"])
     used = ~np.isnan(soa["value"]) & (soa["vce"] > 0)
     longest = np.where(used, longest, -np.inf)
     used &= longest == longest.max(axis=0)
-    return {"soa_v": np.where(used, soa["vce"], np.nan), "soa_i": np.where(used, soa["value"], np.nan)}
+    return {
+        "soa_v": np.where(used, soa["vce"], np.nan),
+        "soa_i": np.where(used, soa["value"], np.nan),
+        "soa_dc": np.isposinf(longest.max(axis=0)),
+    }
 
 
 def _limit_or_typical(limit: Floats, typical: Floats) -> tuple[Floats, Floats]:

@@ -14,12 +14,14 @@ from .base import Duty, Judged
 from .switch_bounds import Bounds, bounds
 from .switch_case import SwitchCase
 from .switch_cautions import cautions
-from .switch_design import Needs, Network, design, needs, stiffest, window
+from .switch_design import Needs, Network, at_an_end, design, needs, window
 from .switch_fields import FIELDS, complete
 from .switch_situation import Situation, situation
 
 Floats = NDArray[np.float64]
-RETRIES = (1.0, 0.75, 0.5, 0.25, 0.0)  # places of the window where a stiffer network is tried
+AT_ONCE = 2000  # parts for which other networks are tried at once
+PLACES = (1.0, 0.75, 0.5, 0.25, 0.0)  # of the window, where other networks are tried
+RETRIES = tuple((place, stiff) for stiff in (True, False) for place in PLACES)
 
 
 def judge(req: Requirement, p: Prepared, network: Mapping[str, float] | None = None) -> Judged:
@@ -49,46 +51,44 @@ def _outcomes(sit: Situation, p: Prepared, n: Needs, net: Network) -> tuple[tupl
 
 
 def _best(sit: Situation, p: Prepared, n: Needs) -> tuple[Network, tuple[Outcome, ...], Bounds]:
-    """The chosen network; where only the network's own checks fail, stiffer ones are tried."""
-    plain = design(sit, p, n)
-    outcomes, b = _outcomes(sit, p, n, plain)
-    rows = np.flatnonzero(_only_network(outcomes))
+    """The chosen network; where nothing is wrong but what the network decides, others are tried."""
+    net = design(sit, p, n)
+    outcomes, b = _outcomes(sit, p, n, net)
+    rows = np.flatnonzero(_only_network(outcomes, net))
     if not len(rows):
-        return plain, outcomes, b
-    worst = _worst(outcomes)[rows]
-    net = _stiffer(sit, p.take(rows), n.take(rows), plain.take(rows), worst)
-    if net is None:
-        return plain, outcomes, b
-    better = plain.put(rows, net)
-    return better, *_outcomes(sit, p, n, better)
+        return net, outcomes, b
+    worst = _worst(outcomes)
+    for some in np.array_split(rows, -(-len(rows) // AT_ONCE)):
+        net = _another(sit, p.take(some), n.take(some), net, some, worst[some])
+    return net, *_outcomes(sit, p, n, net)
 
 
-def _stiffer(sit: Situation, p: Prepared, n: Needs, plain: Network, worst: NDArray[np.int8]) -> Network | None:
-    """For parts that only their network fails: the first stiffer one that does better; None where none does."""
-    net, found = plain, False
-    still_open = np.ones(len(p), dtype=bool)
-    for place in RETRIES:
-        if not still_open.any():
-            break
-        other = stiffest(sit, p, n, plain, place)
-        outcomes, _ = _outcomes(sit, p, n, net.where(still_open, other))
-        better = still_open & (_worst(outcomes) < worst)
-        net = net.where(better, other)
-        worst = np.where(better, _worst(outcomes), worst)
-        still_open &= ~better | _only_network(outcomes)
-        found |= bool(better.any())
-    return net if found else None
+def _another(
+    sit: Situation, p: Prepared, n: Needs, net: Network, rows: NDArray[np.intp], worst: NDArray[np.int8]
+) -> Network:
+    """The network with another one for those of `rows` that another one serves better: the first of the best."""
+    k, m = len(RETRIES), len(rows)
+    copies = np.tile(np.arange(m), k)
+    plain = net.take(rows)
+    others = Network.joined([at_an_end(sit, p, n, plain, place, stiff=stiff) for place, stiff in RETRIES])
+    outcomes, _ = _outcomes(
+        sit, p.take(copies), n.take(copies), others
+    )  # all at once: small shelves are mostly overhead
+    status = _worst(outcomes).reshape(k, m)
+    first = status.argmin(axis=0)
+    better = np.flatnonzero(status.min(axis=0) < worst)
+    return net.put(rows[better], others.take(first[better] * m + better))
 
 
-def _only_network(outcomes: tuple[Outcome, ...]) -> NDArray[np.bool_]:
-    """Parts that another network could still turn: nothing wrong but what the network decides."""
-    wrong = np.zeros(len(outcomes[0].status), dtype=bool)
-    fixed = np.zeros_like(wrong)
+def _only_network(outcomes: tuple[Outcome, ...], net: Network) -> NDArray[np.bool_]:
+    """Parts that another network could still turn: nothing wrong but what the network decides, and room for one."""
+    wrong = np.zeros(len(net.rb), dtype=bool)
+    fixed = ~(net.rb_low <= net.rb_high)
     for one in outcomes:
         bad = one.status != Status.PASS
         wrong |= bad
-        if not one.check.chosen or one.check.name in ("base drive", "driver current", "base drive, inrush"):
-            fixed |= bad  # the window itself is empty, or it is not the network's doing
+        if not one.check.chosen:
+            fixed |= bad
     undecided: NDArray[np.bool_] = wrong & ~fixed
     return undecided
 

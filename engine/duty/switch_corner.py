@@ -57,8 +57,8 @@ def at_corner(sit: Situation, p: Prepared, corner: Corner, need: Need, net: Netw
     cold = replace(cold, values=np.where(np.isnan(cold.values), 0.0, cold.values))  # nothing known: nothing claimed
     beta = saturation.beta_at_room.traced(need.beta_allowed, grade, ("VCE(sat)",), IC=corner.ic, hFE=cold)
     floor = Term("hFE min", np.where(np.isnan(need.gain_stated), np.inf, need.gain_stated), "", gain_grade,
-                 "gain floor that the sheet states there at 25 °C; unlimited where only saturation limits speak",
-                 "hFE limits on file and chords between them")  # fmt: skip
+                 "gain floor that the sheet proves there at 25 °C",
+                 "hFE limits on file and chords between them; beyond them IC ÷ IB of the saturation tests")  # fmt: skip
     inrush = corner.ic is sit.ic_inrush
     k_od = given("overdrive", 1.0 if inrush else sit.number("choice.overdrive"), "", "overdrive wanted")
     needed = drive.base_current_needed(IC=corner.ic, beta_allowed=beta, k_OD=k_od, hFE=floor)

@@ -5,6 +5,7 @@ and large enough for the driver and the base. RBE must hold the base down agains
 low level when hot, and be large enough for the drive to pay for it.
 """
 
+from collections.abc import Sequence
 from dataclasses import dataclass, fields, replace
 
 import numpy as np
@@ -32,7 +33,7 @@ class Need:
 
     drive: Floats  # (), the level at the driver there
     witnesses: saturation.Witnesses
-    gain_stated: Floats  # the gain floor that the sheet states there, 25 °C: overdrive counts from it; NaN: none
+    gain_stated: Floats  # the gain floor that the sheet proves there, 25 °C: overdrive counts from it; NaN: none
     beta_allowed: Floats
     ib: Floats
     vbe: Floats  # highest VBE at that base current, coldest
@@ -85,6 +86,11 @@ class Network:
     def take(self, rows: NDArray[np.intp]) -> "Network":
         """The network of some of the parts."""
         return Network(self.rb[rows], self.rbe[rows], self.rb_low[rows], self.rb_high[rows])
+
+    @classmethod
+    def joined(cls, nets: Sequence["Network"]) -> "Network":
+        """Networks one after the other."""
+        return cls(*(np.concatenate([getattr(net, one.name) for net in nets]) for one in fields(cls)))
 
     def put(self, rows: NDArray[np.intp], other: "Network") -> "Network":
         """This network, but `other` for the parts at `rows`."""
@@ -158,9 +164,13 @@ def base_limit(p: Prepared) -> Floats:
     return np.where(np.isnan(p.ib), usual, p.ib)
 
 
-def stated_gain(p: Prepared, ic: float) -> Floats:
-    """The gain floor that hFE limits state at `ic`, 25 °C. NaN where none reaches."""
-    return either(p.gain.at(ic, p.slope_below), p.gain_low.at(ic, p.slope_below))
+def stated_gain(p: Prepared, ic: "float | Floats") -> Floats:
+    """The gain floor at `ic`, 25 °C, from hFE limits; where none reaches, what the saturation tests prove.
+
+    NaN where neither does.
+    """
+    stated = either(p.gain.at(ic, p.slope_below), p.gain_low.at(ic, p.slope_below))
+    return np.where(np.isnan(stated), p.gain_plain.at(ic, p.slope_below), stated)
 
 
 def switch_witnesses(p: Prepared, ic: float, cold: Floats) -> saturation.Witnesses:
@@ -207,7 +217,7 @@ def _inrush_need(sit: Situation, p: Prepared, unstated: Floats, cold: Floats) ->
     corner = Corner(sit.ic_inrush, sit.corners[-1].drive)
     need = _need(sit, p, corner, unstated, cold)
     ic = float(sit.ic_inrush.values)
-    survives = allowed_current(sit.vs_max.values, p.soa_v, p.soa_i) >= ic
+    survives = p.soa_dc & (allowed_current(sit.vs_max.values, p.soa_v, p.soa_i) >= ic)
     ib = np.where(survives, 0.0, ic / need.beta_allowed)  # for its short time no overdrive is asked
     vbe = np.where(survives, 0.0, vbe_highest(sit, p, ic, ib))
     return replace(need, ib=ib, vbe=vbe)
@@ -313,12 +323,16 @@ def _comfortable(sit: Situation, n: Needs, low: Floats, high: Floats) -> tuple[F
     return rb, middle
 
 
-def stiffest(sit: Situation, p: Prepared, n: Needs, plain: Network, place: float) -> Network:
-    """RB at a place of its window with the smallest RBE that the drive can pay for: the quickest turn-off."""
+def at_an_end(sit: Situation, p: Prepared, n: Needs, plain: Network, place: float, *, stiff: bool) -> Network:
+    """RB at a place of its window, RBE at an end of its interval.
+
+    The smallest RBE that the drive can pay for turns off quickest; the largest that still turns off leaves the
+    most base current.
+    """
     series = sit.requirement.word("resistors.series")
     rb = at_place(plain.rb_low, plain.rb_high, place, series)
-    least, _ = rbe_interval(sit, n, rb)
-    rbe = preferred.at_least(least, series)
+    least, most = rbe_interval(sit, n, rb)
+    rbe = preferred.at_least(least, series) if stiff else preferred.at_most(most, series)
     low, high = window(sit, p, n, rbe)
     return Network(rb, rbe, low, high)
 

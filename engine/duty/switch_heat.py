@@ -11,7 +11,7 @@ from ..physics import drive, junction, saturation, speed, thermal
 from ..physics.constants import ROOM, thermal_voltage
 from ..prepared import Prepared
 from .switch_corner import CornerBounds, NetworkTerms, vbe_term
-from .switch_design import Needs, cold_rise, either, junction_limit, lightest_load, vbe_highest
+from .switch_design import Needs, cold_rise, junction_limit, lightest_load, stated_gain, vbe_highest
 from .switch_situation import Situation
 
 Floats = NDArray[np.float64]
@@ -182,9 +182,7 @@ def switching_times(
             sit.off_open, 0.0, (low_vbe - sit.off_level.values) / (net.rb.values * net.up.values + net.r_drive.values)
         )
         reverse = np.maximum(through_rb, 0.0) + low_vbe / (net.rbe.values * net.up.values) - sit.off_leak
-        gain_at_test = either(p.gain.at(p.off_ic, p.slope_below), p.gain_low.at(p.off_ic, p.slope_below))
-        # above the highest gain on file the saturation tests speak
-        gain_at_test = either(gain_at_test, p.gain_plain.at(p.off_ic, p.slope_below))
+        gain_at_test = stated_gain(p, p.off_ic)
     ibr = Term("IBR min", reverse, "A", Evidence.DERIVED, "lowest reverse base current while turning off",
                "(VBE − V low) ÷ RB + VBE ÷ RBE − leakage of the driver, VBE a decade below the lightest load")  # fmt: skip
     hfe = Term(

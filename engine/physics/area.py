@@ -28,3 +28,16 @@ def allowed_current(v: Floats, corner_v: Floats, corner_i: Floats) -> Floats:
             last_x, last_y = np.where(known, here_x, last_x), np.where(known, here_y, last_y)
         allowed: Floats = np.exp(result)
         return allowed
+
+
+def forbidden_current(v: Floats, corner_v: Floats, corner_i: Floats) -> Floats:
+    """Collector current above which `v` is surely outside: right of the last corner no more than there. [A]
+
+    Infinite without corners. Shapes as of `allowed_current`.
+
+    >>> forbidden_current(np.array(60.0), np.array([[10.0], [40.0]]), np.array([[8.0], [2.0]])).tolist()
+    [2.0]
+    """
+    last = np.min(np.where(np.isnan(corner_i), np.inf, corner_i), axis=0)
+    inside = allowed_current(v, corner_v, corner_i)
+    return np.where(np.isnan(inside), last, inside)

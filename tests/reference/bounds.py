@@ -4,7 +4,7 @@ from dataclasses import dataclass
 
 from engine.evidence import Evidence
 
-from .ieee import INF, NAN, div, either, exp, known, least, most
+from .ieee import INF, NAN, div, exp, known, least, most
 from .laws import (
     base_current,
     base_voltage_off,
@@ -185,9 +185,7 @@ class _Heat:
         low_vbe = most(self.vbe_min - VT_ROOM * 2.302585092994046, 0.0)  # after the current has fallen by a decade
         through = 0.0 if sit.off_open else (low_vbe - sit.off_level) / (net.rb * (1 + tol) + self.r_drive)
         reverse = most(through, 0.0) + low_vbe / (net.rbe * (1 + tol)) - sit.off_leak
-        gain = NAN
-        if s.off:  # above the highest gain on file the saturation tests speak
-            gain = either(either(s.gain.at(s.off.ic), s.gain_low.at(s.off.ic)), s.gain_plain.at(s.off.ic))
+        gain = s.proven_gain(s.off.ic) if s.off else NAN
         t_off = turn_off(s.off, self.ib_max.value, reverse, sit.ic_max, v, gain, self.guess)
         return Graded(t_on, max(D, first.ib.grade, sit.ic_grade)), Graded(t_off, D)
 

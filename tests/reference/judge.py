@@ -2,6 +2,7 @@
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from itertools import product
 
 from engine.evidence import Evidence
 from engine.part import Part
@@ -18,10 +19,9 @@ from .situation import Situation, situation
 G, D, T, M = int(Evidence.GUARANTEED), int(Evidence.DERIVED), int(Evidence.TYPICAL), int(Evidence.MISSING)
 PASS, UNKNOWN, FAIL = 0, 1, 2
 FITS, FITS_ON_TYPICALS, CANNOT_SAY, FAILS = range(4)
-DRIVEN = ("base drive", "driver current", "base drive, inrush")
 NETWORK_DECIDES = (
-    *DRIVEN, "base current", "junction temperature", "load current", "off-state current", "power dissipation",
-    "saturation voltage", "turn-off time", "turn-on time",
+    "base current", "base drive", "base drive, inrush", "driver current", "junction temperature", "load current",
+    "off-state current", "power dissipation", "saturation voltage", "turn-off time", "turn-on time",
 )  # fmt: skip
 
 
@@ -64,10 +64,9 @@ def judge(req: Requirement, part: Part, network: Mapping[str, float] | None = No
     else:
         net = first = designer.design()
         answers, b = answered(net)
-        for place in (1.0, 0.75, 0.5, 0.25, 0.0):
-            if not _another_could_turn_it(answers):
-                break
-            other = designer.stiffest(first, place)
+        others = product((True, False), (1.0, 0.75, 0.5, 0.25, 0.0)) if _another_could_turn_it(answers, net) else ()
+        for stiff, place in others:
+            other = designer.at_an_end(first, place, stiff)
             tried, tried_b = answered(other)
             if _worst(tried) < _worst(answers):
                 net, answers, b = other, tried, tried_b
@@ -80,10 +79,10 @@ def _worst(answers: Mapping[str, Answer]) -> int:
     return max(one.status for one in answers.values())
 
 
-def _another_could_turn_it(answers: Mapping[str, Answer]) -> bool:
-    """Something is wrong, and nothing but what another network could mend."""
+def _another_could_turn_it(answers: Mapping[str, Answer], net: Network) -> bool:
+    """Something is wrong, nothing but what another network could mend, and there is room for one."""
     wrong = [name for name, one in answers.items() if one.status != PASS]
-    return bool(wrong) and all(name in NETWORK_DECIDES and name not in DRIVEN for name in wrong)
+    return net.low <= net.high and bool(wrong) and all(name in NETWORK_DECIDES for name in wrong)
 
 
 def _compare(
@@ -169,11 +168,15 @@ def _safe_area(sit: Situation, s: Sheet, tj_limit: float) -> Answer:
     share = 1.0 if sit.inductive else 0.5
     volts, amps = sit.v_off * share, sit.ic_max * share
     feared = s.power and volts > 30.0
-    if s.soa:
-        allowed = Graded(area_current(s.soa, volts) * volts)
-    elif feared:
+    printed = area_current(s.soa, volts) * volts
+    if s.soa_dc and known(printed):
+        return _compare(Graded(volts * amps, D), Graded(printed))
+    if feared:
         line = least(div(tj_limit - sit.number("ambient.max"), s.rth_jc), s.pd_case)
-        allowed = Graded(0.5 * line, D)
+        box = 0.5 * line
     else:
-        allowed = Graded(s.vceo * s.icm, D)
-    return _compare(Graded(volts * amps, D), allowed, undecided=feared and not s.soa)
+        box = s.vceo * s.icm
+    # a pulse's area, or one that ends at a lower voltage, still says where the part must not be
+    forbidden = printed if known(printed) else min((i for _, i in s.soa), default=INF) * volts
+    undecided = feared and volts * amps <= forbidden
+    return _compare(Graded(volts * amps, D), Graded(least(box, forbidden), D), undecided=undecided)

@@ -96,7 +96,7 @@ def needs(sit: Situation, s: Sheet) -> Needs:
     if known(sit.ic_inrush):
         ic = sit.ic_inrush
         asks = _need(sit, s, ic, sit.corners[-1][1], unstated, cold)
-        survives = area_current(s.soa, sit.vs_max) >= ic
+        survives = s.soa_dc and area_current(s.soa, sit.vs_max) >= ic
         ib = 0.0 if survives else ic / asks.beta
         vbe = 0.0 if survives else vbe_highest(s, ic, ib, coldest)
         inrush = Need(ic, asks.drive, asks.sat, asks.gain, asks.beta, ib, vbe)
@@ -114,7 +114,7 @@ def needs(sit: Situation, s: Sheet) -> Needs:
 
 def _need(sit: Situation, s: Sheet, ic: float, drive: float, v_room: float, cold: float) -> Need:
     sat = at_current(s, ic, cold)
-    gain = either(s.gain.at(ic), s.gain_low.at(ic))
+    gain = s.proven_gain(ic)
     beta = beta_allowed(sat, v_room)
     ib = most(ic / beta, ic * sit.number("choice.overdrive") / gain if known(gain) else 0.0)
     return Need(ic, drive, sat, gain, beta, ib, vbe_highest(s, ic, ib, sit.number("ambient.min")))
@@ -169,10 +169,11 @@ class Designer:
             return Network(self._inside(low, usable), INF, low, high)
         return self._with_rbe(Network(self._inside(low, high), INF, low, high))
 
-    def stiffest(self, first: Network, place: float) -> Network:
-        """RB at a place of the window, with the smallest RBE that the drive can pay for."""
+    def at_an_end(self, first: Network, place: float, stiff: bool) -> Network:
+        """RB at a place of the window, RBE the smallest that the drive can pay for or the largest that turns off."""
         rb = self._at_place(first.low, first.high, place)
-        rbe = preferred.at_least(self._rbe_interval(rb)[0], self.series)
+        bottom, top = self._rbe_interval(rb)
+        rbe = preferred.at_least(bottom, self.series) if stiff else preferred.at_most(top, self.series)
         return Network(rb, rbe, *self.window(rbe))
 
     def _with_rbe(self, plain: Network) -> Network:

@@ -6,7 +6,7 @@ from engine.evidence import Evidence
 from engine.part import Limit, Part
 
 from .gain import GainFloor
-from .ieee import INF, NAN, div, known, ln, most
+from .ieee import INF, NAN, div, either, known, ln, most
 
 G, D, T, M = Evidence.GUARANTEED, Evidence.DERIVED, Evidence.TYPICAL, Evidence.MISSING
 VT_ROOM = 1.380649e-23 / 1.602176634e-19 * (273.15 + 25.0)
@@ -66,7 +66,8 @@ class Sheet:
     leak_grade: int
     on: Test | None
     off: Test | None
-    soa: tuple[tuple[float, float], ...]  # (V, A), rising
+    soa: tuple[tuple[float, float], ...]  # (V, A), rising; for direct current, else for the longest pulse
+    soa_dc: bool
 
     @property
     def darlington(self) -> bool:
@@ -79,6 +80,11 @@ class Sheet:
     @property
     def prebiased(self) -> bool:
         return self.structure.endswith("prebiased")
+
+    def proven_gain(self, ic: float) -> float:
+        """The gain floor at 25 °C from hFE limits; where none reaches, from the saturation tests."""
+        stated = either(self.gain.at(ic), self.gain_low.at(ic))
+        return stated if known(stated) else self.gain_plain.at(ic)
 
 
 def read(part: Part) -> Sheet:
@@ -130,6 +136,7 @@ def read(part: Part) -> Sheet:
         on=_time(part, "ton", ("td", "tr"), ("ic", "ib")),
         off=_time(part, "toff", ("ts", "tf"), ("ic", "ib", "ib2")),
         soa=_area(part),
+        soa_dc=any(x.symbol == "SOA" and x.at("t") is None and (x.max or x.min) and x.at("vce") for x in part.limits),
     )
 
 
