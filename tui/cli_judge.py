@@ -18,12 +18,18 @@ REQUIREMENT = click.argument("requirement", type=FILE, metavar="REQUIREMENT.toml
 TOP = 20
 
 
-def one_format(json_: bool, csv: bool, markdown: bool) -> str:
-    """The one format that was asked for; text when none was."""
-    asked = [name for name, yes in (("json", json_), ("csv", csv), ("markdown", markdown)) if yes]
+_ENDINGS = {".json": "json", ".csv": "csv", ".md": "markdown", ".html": "html"}
+
+
+def one_format(output: Path | None, otherwise: str, **flags: bool) -> str:
+    """The one format that was asked for, else what the file's name ends in, else `otherwise`."""
+    asked = [name.removesuffix("_") for name, yes in flags.items() if yes]
     if len(asked) > 1:
         raise click.UsageError(f"--{asked[0]} and --{asked[1]} exclude each other")
-    return asked[0] if asked else "text"
+    by_name = _ENDINGS.get(output.suffix.casefold(), "") if output else ""
+    if not asked and by_name and by_name not in (name.removesuffix("_") for name in flags):
+        raise click.UsageError(f"{output}: no {by_name} of this can be written; choose another ending or a format")
+    return asked[0] if asked else by_name or otherwise
 
 
 @click.command()
@@ -39,7 +45,7 @@ def one_format(json_: bool, csv: bool, markdown: bool) -> str:
 def rank(context: click.Context, requirement: Path, parts: tuple[str, ...], top: int, everything: bool, json_: bool,
          csv: bool, markdown: bool, output: Path | None) -> None:  # fmt: skip
     """Rank the parts on the shelf under a requirement."""
-    form = one_format(json_, csv, markdown)
+    form = one_format(output, "text", json_=json_, csv=csv, markdown=markdown)
     stated = read_requirement_file(requirement)
     with open_store(context) as store:
         shelf = store.shelf()
@@ -104,8 +110,7 @@ def _tally(ranking: "Ranking") -> str:
 def sheet(context: click.Context, type_number: str, requirement: Path, markdown: bool, json_: bool, html: bool,
           output: Path | None) -> None:  # fmt: skip
     """The calculation sheet of one part: every formula with its numbers, evidence and source."""
-    if sum((markdown, json_, html)) > 1:
-        raise click.UsageError("--markdown, --json and --html exclude each other")
+    form = one_format(output, "markdown", markdown=markdown, json_=json_, html=html)
     stated = read_requirement_file(requirement)
     with open_store(context) as store:
         shelf = store.shelf()
@@ -117,10 +122,10 @@ def sheet(context: click.Context, type_number: str, requirement: Path, markdown:
 
     (row,) = rows_of(shelf, (type_number,))
     one = Sheet(stated.requirement, explain(stated.requirement, shelf, row), shelf.fingerprint, today(), limits)
-    if json_:
+    if form == "json":
         give(json.dumps(sheet_object(one), ensure_ascii=False, indent=1, allow_nan=False) + "\n", output)
     else:
-        give(sheet_html(one) if html else sheet_markdown(one), output)
+        give(sheet_html(one) if form == "html" else sheet_markdown(one), output)
 
 
 @click.command()

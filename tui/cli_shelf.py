@@ -199,7 +199,7 @@ def shortlist_list(context: click.Context, json_: bool) -> None:
 def shortlist_export(context: click.Context, requirement: Path, parts: tuple[str, ...], json_: bool, csv: bool,
                      markdown: bool, output: Path | None) -> None:  # fmt: skip
     """Judge parts under a requirement and write them as a document."""
-    form = one_format(json_, csv, markdown)
+    form = one_format(output, "markdown", json_=json_, csv=csv, markdown=markdown)
     stated = read_requirement_file(requirement)
     with open_store(context) as store:
         shelf = store.shelf()

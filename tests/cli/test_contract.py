@@ -133,3 +133,15 @@ def test_registered_types_come_out_as_an_engineer_expects(registered: Path, name
 def test_the_demo_requirements_are_answered(demo: Path, name: str, code: int) -> None:
     done = betafloor("rank", demo / f"{name}.toml", shelf=demo / "demo.shelf")
     assert done.returncode == code and done.stdout and "155 parts" in done.stderr
+
+
+@pytest.mark.parametrize(("name", "starts"), [("a.csv", "rank,part,"), ("a.json", "{"), ("a.md", "# ")])
+def test_a_document_is_what_its_name_says(demo: Path, tmp_path: Path, name: str, starts: str) -> None:
+    done = betafloor("shortlist", "export", demo / "valve-solenoid.toml", "--part", "QZ-514", "-o", tmp_path / name,
+                     shelf=demo / "demo.shelf")  # fmt: skip
+    assert done.returncode == 0, done.stderr
+    assert (tmp_path / name).read_text(encoding="utf-8").startswith(starts)
+    done = betafloor(
+        "sheet", "QZ-514", demo / "valve-solenoid.toml", "-o", tmp_path / "s.csv", shelf=demo / "demo.shelf"
+    )
+    assert done.returncode == 2 and "s.csv" in done.stderr

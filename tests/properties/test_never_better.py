@@ -29,17 +29,13 @@ from tests.strategies import seeds
 shares = st.floats(0.01, 1.0)
 PHASES = (Phase.explicit, Phase.generate)  # a seed does not shrink to anything simpler
 
-# Two demands that a silent sheet does not raise: without its safe area the box of the ratings counts (common practice),
-# which may be wider than corners that stop short of the point; and overdrive is counted from a gain floor, so that
-# where none is stated the base current of the saturation test stands alone.
-FALLS_BACK = ("SOA", "hFE")
-
-
-MISSED = 0.03
+MISSED = 0.01
 """Share of a shelf for which the choice of a network may overlook one that serves (method: not a promise broken)."""
 
 
-def hold(req: Requirement, shelf: Shelf, harder: Requirement, worse: Shelf, what: str) -> None:
+def hold(
+    req: Requirement, shelf: Shelf, harder: Requirement, worse: Shelf, what: str, *, undecided_only: bool = False
+) -> None:
     """Raise with every part that came to fit. A part on typicals has not come to fit.
 
     The choice tries a handful of networks and may overlook the only one that serves; then a harder case can point
@@ -47,7 +43,8 @@ def hold(req: Requirement, shelf: Shelf, harder: Requirement, worse: Shelf, what
     the wrong way. And overlooking stays rare.
     """
     before, after = rank(req, shelf), rank(harder, worse)
-    came = np.flatnonzero((after.verdict == Verdict.FITS) & (before.verdict != Verdict.FITS))
+    fitted_not = before.verdict == Verdict.CANNOT_SAY if undecided_only else before.verdict != Verdict.FITS
+    came = np.flatnonzero((after.verdict == Verdict.FITS) & fitted_not)
     told = []
     for i in came:
         given = {name: float(after.network[name][i]) for name in ("rb", "rbe")}
@@ -86,14 +83,21 @@ def test_a_worse_sheet_makes_nothing_fit(symbol: str, bound: str, seed: int, u: 
 @settings(max_examples=25, derandomize=True, deadline=None, phases=PHASES)
 @given(seed=seeds, share=st.sampled_from((0.03, 0.1, 0.3, 0.7)))
 def test_a_sheet_with_gaps_makes_nothing_fit(seed: int, share: float) -> None:
+    """What could not be said cannot be said of less. A sheet that forbade something may well forbid it no more."""
     req = asked(seed)
     parts, table, shelf = pool(is_pnp(req))
     dropped = np.random.default_rng(seed).random(len(table.part)) < share
-    fewer = without(table, dropped & ~np.isin(table.symbol, [SYMBOL_CODES[name] for name in FALLS_BACK]))
-    hold(req, shelf, req, shelf_of(parts, fewer), f"{share:.0%} of the limits dropped")
+    hold(
+        req,
+        shelf,
+        req,
+        shelf_of(parts, without(table, dropped)),
+        f"{share:.0%} of the limits dropped",
+        undecided_only=True,
+    )
 
 
-@pytest.mark.parametrize("symbol", sorted(set(SYMBOL_CODES) - set(FALLS_BACK)))
+@pytest.mark.parametrize("symbol", sorted(SYMBOL_CODES))
 @settings(max_examples=2, derandomize=True, deadline=None, phases=PHASES)
 @given(seed=seeds)
 def test_a_sheet_without_one_symbol_makes_nothing_fit(symbol: str, seed: int) -> None:
@@ -101,7 +105,7 @@ def test_a_sheet_without_one_symbol_makes_nothing_fit(symbol: str, seed: int) ->
     parts, table, shelf = pool(is_pnp(req))
     dropped = table.symbol == SYMBOL_CODES[symbol]
     if dropped.any():
-        hold(req, shelf, req, shelf_of(parts, without(table, dropped)), f"{symbol} dropped")
+        hold(req, shelf, req, shelf_of(parts, without(table, dropped)), f"{symbol} dropped", undecided_only=True)
 
 
 @settings(max_examples=8, derandomize=True, deadline=None, phases=PHASES)

@@ -69,9 +69,9 @@ def test_keys_sent_behind_the_one_that_opens_a_screen_reach_it(terminal: Termina
 
 def test_a_part_searched_and_opened_in_one_go_is_that_part(terminal: Terminal) -> None:
     terminal.until("10 of 10")
-    for name in ("qx-130", "qx-112", "oops"):
+    for name, title in (("qx-130", "QX-130"), ("qx-112", "QX-112"), ("oops", "[/]oops")):
         terminal("send-keys", "/", *name, "Enter", "Enter")
-        assert name.upper() in terminal.until("VCEO  ").upper().splitlines()[0]
+        terminal.until(f"Betafloor · {title} ")
         terminal("send-keys", "Escape")
         terminal.until("1 of 10")
         terminal("send-keys", "x")
@@ -90,6 +90,12 @@ def test_enter_does_not_overtake_the_letters_before_it(terminal: Terminal) -> No
     terminal("send-keys", "-l", "list-of-parts.xyz")
     terminal("send-keys", "Enter")
     assert "list-of-parts.xyz" in terminal.until("must end in")
+
+
+def test_a_field_cleared_and_corrected_in_one_go_holds_what_was_meant(terminal: Terminal) -> None:
+    terminal.until("10 of 10")
+    terminal("send-keys", "/", "o", "o", "C-u", "q", "x", "-", "9", "BSpace", "1", "3", "Left", "BSpace", "1", "Enter")
+    assert "Search qx-13" in terminal.until("1 of 10")
 
 
 def test_the_program_leaves_the_terminal_as_it_was(terminal: Terminal) -> None:

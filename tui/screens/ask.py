@@ -9,6 +9,7 @@ from textual.containers import Vertical
 from textual.widgets import Input, Static
 
 from ..commands import bindings_of
+from ..widgets.entry import Entry
 from ..widgets.lines_of_screen import KeysLine
 from .base import Dialog
 
@@ -40,7 +41,7 @@ class Ask(Dialog[str]):
     def compose(self) -> ComposeResult:
         with Vertical(id="box"):
             yield Static(self.question, id="question", markup=False)
-            yield Input(self.first_text, compact=True, select_on_focus=False)
+            yield Entry(self.first_text, compact=True, select_on_focus=False)
             yield Static("", id="doubt", markup=False)
         yield KeysLine("ask")
 

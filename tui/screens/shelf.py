@@ -10,6 +10,7 @@ from textual.widgets import Input, Static
 
 from ..commands import bindings_of
 from ..state import Session, ShelfFilter
+from ..widgets.entry import Entry
 from ..widgets.lines_view import LinesView
 from .base import Room
 
@@ -41,7 +42,7 @@ class ShelfScreen(Room):
     def body(self) -> ComposeResult:
         with Horizontal(id="filters"):
             yield Static("Search", markup=False)
-            yield Input(placeholder="press / and type", id="search", compact=True, select_on_focus=False)
+            yield Entry(placeholder="press / and type", id="search", compact=True, select_on_focus=False)
             yield Static("", id="kept", markup=False)
         yield LinesView(id="parts", empty="Opening the shelf …")
         yield Static(HINT, id="hint", markup=False)

@@ -195,7 +195,7 @@ def _framed(cells: list[list[str]], paper: _Paper, width: int) -> list[str]:
     upright, corner, level, tick, cross = ("|", "+", "-", "+", "+") if paper.plain else ("│", "└", "─", "┤", "┴")
     labels: dict[int, str] = {}
     for value in _ticks(paper.axes.y, paper.rows / 2):
-        labels.setdefault(round(paper.y(value)), axis_number(value))
+        labels.setdefault(round(paper.y(value)), _plain_text(axis_number(value), plain=paper.plain))
     axes = paper.axes
     title = f"{axes.y_title}{_in_unit(axes.y_unit)} over {axes.x_title}{_in_unit(axes.x_unit)}"
     lines = [_cut(_plain_text(title, plain=paper.plain), width)]

@@ -13,6 +13,7 @@ from textual.widget import Widget
 from textual.widgets import Input, Static
 
 from .cells import fit, wrap
+from .entry import Entry
 
 if TYPE_CHECKING:
     from engine.requirement import Field, Problem
@@ -95,7 +96,7 @@ class FieldRow(Widget):
             self.input = WordInput(field.choices, default)
         else:
             placeholder = f"({default})" if default else "needed" if field.required else ""
-            self.input = Input(placeholder=placeholder, compact=True, select_on_focus=False)
+            self.input = Entry(placeholder=placeholder, compact=True, select_on_focus=False)
 
     def compose(self) -> ComposeResult:
         yield self.input
