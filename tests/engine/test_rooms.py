@@ -73,5 +73,5 @@ def test_nothing_heavy_is_imported_before_it_is_needed(name: str) -> None:
 
 
 def test_no_file_is_longer_than_a_reader_keeps_in_mind() -> None:
-    for file in ROOT.glob("*/**/*.py"):
+    for file in (file for room in (*ROOMS, "tests") for file in (ROOT / room).rglob("*.py")):
         assert len(file.read_text(encoding="utf-8").splitlines()) <= MOST_LINES, file
