@@ -16,6 +16,7 @@ from .evidence import Evidence, Grades
 from .part import STRUCTURES
 from .physics.constants import ROOM, ROOM_KELVIN, ZERO_CELSIUS, thermal_voltage
 from .physics.junction import COLD_SHIFT
+from .points import grade, limit_or_typical, most, room_points, worst_of_same
 from .shelf import SYMBOL_CODES, Shelf
 
 Floats = NDArray[np.float64]
@@ -154,17 +155,17 @@ def _thermal(shelf: Shelf, vceo: Floats) -> dict[str, Floats | Grades | Mask]:
     small = bare & (pd["max"] <= SMALL_PD)
     ambient_points = np.where(at_ambient, (tj - pd["ta"]) / pd["max"], np.where(small, (tj - ROOM) / pd["max"], np.nan))
     case_points = np.where(at_case, (tj - pd["tc"]) / pd["max"], np.nan)
-    ja, ja_grade = _resistance(r["rth_ja"], 1 / r["slope_ta"], _most(ambient_points))
-    jc, jc_grade = _resistance(r["rth_jc"], 1 / r["slope_tc"], _most(case_points))
-    pd_case = _most(np.where(at_case, pd["max"], np.nan))
-    pd_case = np.where(np.isnan(pd_case), _most(np.where(bare, pd["max"], np.nan)), pd_case)
+    ja, ja_grade = _resistance(r["rth_ja"], 1 / r["slope_ta"], most(ambient_points))
+    jc, jc_grade = _resistance(r["rth_jc"], 1 / r["slope_tc"], most(case_points))
+    pd_case = most(np.where(at_case, pd["max"], np.nan))
+    pd_case = np.where(np.isnan(pd_case), most(np.where(bare, pd["max"], np.nan)), pd_case)
     named = np.isin(np.array([str(p).upper() for p in shelf.package], dtype=object), POWER_PACKAGES)
     return {
         "rth_ja": ja,
         "rth_ja_grade": ja_grade,
         "rth_jc": jc,
         "rth_jc_grade": jc_grade,
-        "pd_ambient": _most(np.where(at_ambient | small, pd["max"], np.nan)),
+        "pd_ambient": most(np.where(at_ambient | small, pd["max"], np.nan)),
         "pd_case": pd_case,
         "power": named | (pd_case >= 10) | (r["ic"] >= 3),
         "v_epi": (0.5 + 0.02 * vceo) / r["ic"],
@@ -175,38 +176,38 @@ def _resistance(printed: Floats, from_slope: Floats, from_power: Floats) -> tupl
     """The worse of what is printed and what the slope says; from power and TJ only where neither is there."""
     both = np.where(np.isnan(printed), from_slope, np.where(from_slope > printed, from_slope, printed))
     value = np.where(np.isnan(both), from_power, both)
-    grade = np.where(value == printed, Evidence.GUARANTEED, Evidence.DERIVED).astype(np.int8)
-    return value, grade
+    grades = np.where(value == printed, Evidence.GUARANTEED, Evidence.DERIVED).astype(np.int8)
+    return value, grades
 
 
 def _saturation(shelf: Shelf) -> dict[str, Floats | Grades]:
     sat = shelf.points["VCE(sat)"]
-    v, typical = _limit_or_typical(sat["max"], sat["typ"])
-    v = _worst_of_same(v, np.maximum, sat["ic"], sat["ib"], sat["temp"])
-    used = _room_points(sat["temp"], ~np.isnan(v) & (sat["ic"] > 0) & (sat["ib"] > 0), hotter=True)
+    v, typical = limit_or_typical(sat["max"], sat["typ"])
+    v = worst_of_same(v, np.maximum, sat["ic"], sat["ib"], sat["temp"])
+    used = room_points(sat["temp"], ~np.isnan(v) & (sat["ic"] > 0) & (sat["ib"] > 0), hotter=True)
     order = np.argsort(np.where(used, sat["ic"], np.nan), axis=0, kind="stable")
     ic, ib, volts = (np.take_along_axis(np.where(used, c, np.nan), order, 0) for c in (sat["ic"], sat["ib"], v))
     return {
         "sat_ic": ic,
         "sat_ib": ib,
         "sat_v": volts,
-        "sat_grade": _grade(used, typical),
-        "ib_tested": _most(np.where(used, sat["ib"], np.nan)),
+        "sat_grade": grade(used, typical),
+        "ib_tested": most(np.where(used, sat["ib"], np.nan)),
     }
 
 
 def _junction(shelf: Shelf, darlington: Mask) -> dict[str, Floats | Grades]:
     """VBE from above (saturation tests) and from below (minimums on file, else common practice)."""
     sat = shelf.points["VBE(sat)"]
-    v, typical = _limit_or_typical(sat["max"], sat["typ"])
-    v = _worst_of_same(v, np.maximum, sat["ic"], sat["ib"], sat["temp"])
+    v, typical = limit_or_typical(sat["max"], sat["typ"])
+    v = worst_of_same(v, np.maximum, sat["ic"], sat["ib"], sat["temp"])
     used = ~np.isnan(v) & (sat["ic"] > 0) & (sat["ib"] > 0)
-    used = _room_points(sat["temp"], used, hotter=False)
+    used = room_points(sat["temp"], used, hotter=False)
     return {
         "vbe_ic": np.where(used, sat["ic"], np.nan),
         "vbe_ib": np.where(used, sat["ib"], np.nan),
         "vbe_v": np.where(used, v, np.nan),
-        "vbe_grade": _grade(used, typical),
+        "vbe_grade": grade(used, typical),
         "floor_v": _junction_floor(shelf, darlington),
         "floor_i": shelf.ratings["ic"] / 10,
     }
@@ -217,25 +218,27 @@ def _junction_floor(shelf: Shelf, darlington: Mask) -> Floats:
 
     Common practice says 0.60 V. A minimum on file says more where it was measured at a small current, for
     the ohmic drop in it may be half a volt at the rated current; and where it says less, it is believed.
-    A minimum measured cold is first moved to 25 °C.
+    A minimum measured cold is first moved to 25 °C. Of a Darlington only one of its junctions is counted on: at
+    light loads the second may not conduct.
     """
     vt = float(thermal_voltage(ROOM))
     rated, per_kelvin = shelf.ratings["ic"], COLD_SHIFT * np.where(darlington, 2.0, 1.0)
-    sure, most = np.full(len(shelf), USUAL_FLOOR), np.full(len(shelf), -np.inf)
+    sure, highest = np.full(len(shelf), USUAL_FLOOR), np.full(len(shelf), -np.inf)
     for points in (shelf.points["VBE(on)"], shelf.points["VBE(sat)"]):
         for low, ic, temp in zip(points["min"], points["ic"], points["temp"], strict=True):
             moved = low + vt * np.log(rated / 10 / ic) - per_kelvin * np.maximum(ROOM - temp, 0.0)
-            sure = np.where(moved - OHMIC * ic / rated - 0.02 > sure, moved - OHMIC * ic / rated - 0.02, sure)
-            most = np.where(moved > most, moved, most)
-    return np.where(np.isinf(most), sure, np.minimum(sure, most))
+            higher = moved - OHMIC * ic / rated - 0.02
+            sure = np.where(~darlington & (higher > sure), higher, sure)
+            highest = np.where(moved > highest, moved, highest)
+    return np.where(np.isinf(highest), sure, np.minimum(sure, highest))
 
 
 def _gain(shelf: Shelf, ready: Mapping[str, Any]) -> dict[str, Floats | Curve]:
     points = shelf.points["hFE"]
-    gain, typical = _limit_or_typical(points["min"], points["typ"])
-    gain = _worst_of_same(gain, np.minimum, points["ic"], points["vce"], points["temp"])
+    gain, typical = limit_or_typical(points["min"], points["typ"])
+    gain = worst_of_same(gain, np.minimum, points["ic"], points["vce"], points["temp"])
     stated = ~np.isnan(gain) & (points["ic"] > 0)
-    used = _room_points(points["temp"], stated, hotter=False)
+    used = room_points(points["temp"], stated, hotter=False)
     # a gain stated without VCE says nothing about a low one
     low = used & (points["vce"] <= LOW_VCE)
     high = used & ~low
@@ -300,15 +303,15 @@ def _cold_exponent(
 def _leakage(shelf: Shelf, ready: Mapping[str, Any]) -> dict[str, Floats | Grades]:
     """Collector leakage maximums. A Darlington's inner base floats and multiplies: only the open-base limit counts."""
     leak = shelf.points["leakage"]
-    v, typical = _limit_or_typical(leak["max"], leak["typ"])
-    v = _worst_of_same(v, np.maximum, leak["v"], leak["temp"], leak["symbol"])
+    v, typical = limit_or_typical(leak["max"], leak["typ"])
+    v = worst_of_same(v, np.maximum, leak["v"], leak["temp"], leak["symbol"])
     open_base = leak["symbol"] == SYMBOL_CODES["ICEO"]
     used = ~np.isnan(v) & ~np.isnan(leak["v"]) & (open_base | ~ready["darlington"])
     return {
         "leak_t": np.where(used, leak["temp"], np.nan),
         "leak_v": np.where(used, leak["v"], np.nan),
         "leak_i": np.where(used, v, np.nan),
-        "leak_grade": _grade(used, typical),
+        "leak_grade": grade(used, typical),
     }
 
 
@@ -358,42 +361,3 @@ def _safe_area(shelf: Shelf) -> dict[str, NDArray[Any]]:
         "soa_i": np.where(used, soa["value"], np.nan),
         "soa_dc": np.isposinf(longest.max(axis=0)),
     }
-
-
-def _limit_or_typical(limit: Floats, typical: Floats) -> tuple[Floats, Floats]:
-    """A part's limits; only a part without any falls back on typicals. Values and 1 where typical, (k, n)."""
-    without = np.isnan(limit).all(axis=0)
-    fallback = np.isnan(limit) & without
-    return np.where(fallback, typical, limit), fallback.astype(np.float64)
-
-
-def _worst_of_same(value: Floats, worst: np.ufunc, *conditions: Floats) -> Floats:
-    """Statements under the same conditions contradict each other: the unkind one holds for all. (k, n)"""
-    value = value.copy()
-    for i in range(len(value)):
-        for j in range(i):
-            same = ~np.isnan(value[i]) & ~np.isnan(value[j])
-            for one in conditions:
-                same &= (one[i] == one[j]) | (np.isnan(one[i]) & np.isnan(one[j]))
-            both = worst(value[i], value[j])
-            value[i], value[j] = np.where(same, both, value[i]), np.where(same, both, value[j])
-    return value
-
-
-def _room_points(temp: Floats, stated: Mask, hotter: bool) -> Mask:
-    """The points at room temperature; where a part has none, those on the unkind side of it."""
-    room = stated & (temp >= 15) & (temp <= 35)
-    other = stated & ((temp > 35) if hotter else (temp < 15))
-    return np.where(room.any(axis=0), room, other)
-
-
-def _grade(used: Mask, typical: Floats) -> Grades:
-    is_typical = (used & (typical > 0)).any(axis=0)
-    grade = np.where(is_typical, Evidence.TYPICAL, Evidence.GUARANTEED)
-    return np.where(used.any(axis=0), grade, Evidence.MISSING).astype(np.int8)
-
-
-def _most(points: Floats) -> Floats:
-    """The largest of a part's points, NaN where it has none. (k, n) → (n,)."""
-    best = np.max(np.where(np.isnan(points), -np.inf, points), axis=0)
-    return np.where(np.isinf(best), np.nan, best)

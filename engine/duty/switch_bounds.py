@@ -83,7 +83,9 @@ def bounds(sit: Situation, p: Prepared, n: Needs, net: Network) -> Bounds:
 def _off_current(sit: Situation, p: Prepared, net: NetworkTerms, tj: Term) -> Term:
     symbols = ("ICBO",) if not p.darlington.all() else ("ICEO",)
     hot = tj.values
-    values = quiet(leakage.leakage_most, float(sit.vs_max.values), hot, p.leak_v, p.leak_t, p.leak_i, p.vceo)
+    values = quiet(
+        leakage.leakage_most, float(sit.vs_max.values), hot, p.leak_v, p.leak_t, p.leak_i, p.vceo, p.darlington
+    )
     leak = leakage.leakage_hot.traced(values, p.leak_grade, symbols, V=sit.vs_max, TJ=tj)
     into_base = Term("I base", leak.values + sit.off_leak, "A", leak.evidence, "leakage into the base node",
                      inputs={"leak": leak, "driver": given("driver leakage", sit.off_leak, "A")})  # fmt: skip

@@ -126,7 +126,7 @@ def needs(sit: Situation, p: Prepared) -> Needs:
     guess = np.minimum(guess, _tj_guess(sit, p, _promised(corners) * hot + cold_rise(sit, p), tj_limit))
     ic_least = lightest_load(sit, v_on)
     vbe_min = junction.vbe_hot.raw(ic_least, guess, p.floor_v, p.floor_i)
-    leak = leakage.leakage_most(float(sit.vs_max.values), guess, p.leak_v, p.leak_t, p.leak_i, p.vceo)
+    leak = leakage.leakage_most(float(sit.vs_max.values), guess, p.leak_v, p.leak_t, p.leak_i, p.vceo, p.darlington)
     allowed = leakage.base_voltage_allowed(
         req.number("limits.off_current_max"), leak, leakage.floor_hot.raw(p.floor_v, guess), p.floor_i,
         np.asarray(thermal_voltage(guess)),

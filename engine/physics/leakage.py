@@ -20,24 +20,32 @@ def doublings(t: Floats) -> Floats:
     return below / STEP_BELOW + np.maximum(t - KNEE, 0.0) / STEP_ABOVE
 
 
-def leakage_most(v: float, t: Floats, test_v: Floats, test_t: Floats, test_i: Floats, vceo: Floats) -> Floats:
+def leakage_most(
+    v: float, t: Floats, test_v: Floats, test_t: Floats, test_i: Floats, vceo: Floats, stands: NDArray[np.bool_]
+) -> Floats:
     """Highest collector leakage at voltage `v` and `t` °C (n,) from leakage maximums (k, n). [A]
 
     Each limit grows by the doubling rule from its own temperature; a limit at a hotter test holds as it
     stands; between a cooler and a hotter limit the chord of log I over 1/T holds (source `leakage arrhenius`).
     The kindest bound wins, since each is true. A test at a lower voltage is scaled with the voltage and the multiplication factor
     1/(1 − (V/VBR)³) of the junction, up to VCEO. NaN: none.
+
+    `stands` (n,): parts whose leakage feeds a base of their own (a Darlington's). There it rises by orders of
+    magnitude where its inner resistors no longer hold that base down, so that only a limit at least as hot and at
+    no lower a voltage bounds it.
     """
+    grows = np.logical_not(stands)
     multiplied = v / test_v / (1 - (v / (JUNCTION_OVER_VCEO * vceo)) ** 3)
-    scale = np.where(test_v >= v * (1 - 1e-9), 1.0, np.where(v <= vceo, multiplied, np.nan))
+    scale = np.where(test_v >= v * (1 - 1e-9), 1.0, np.where((v <= vceo) & grows, multiplied, np.nan))
     at_v = test_i * scale
     best = np.full(len(vceo), np.inf)
     inverse = 1 / (t + ZERO_CELSIUS)
     for i, (temp, current) in enumerate(zip(test_t, at_v, strict=True)):
         grown = current * 2.0 ** np.maximum(doublings(t) - doublings(temp), 0.0)
+        grown = np.where(grows | (temp >= t), grown, np.nan)
         best = np.where(grown < best, grown, best)
         for hot_temp, hot_current in zip(test_t[i + 1 :], at_v[i + 1 :], strict=True):
-            between = (temp < t) & (t < hot_temp)
+            between = (temp < t) & (t < hot_temp) & grows
             a, b = 1 / (temp + ZERO_CELSIUS), 1 / (hot_temp + ZERO_CELSIUS)
             share = (a - inverse) / np.where(a > b, a - b, 1.0)
             chord = np.exp(np.log(current) + share * np.log(hot_current / current))

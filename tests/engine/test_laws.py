@@ -115,7 +115,11 @@ def _leakage(
     t: float, limits: list[tuple[float, float]], v: float = 20.0, tested: float = 50.0, vceo: float = 60.0
 ) -> float:
     temps, amps = (np.array([[one[i]] for one in limits]) for i in (0, 1))
-    return float(leakage.leakage_most(v, np.array([t]), np.full_like(temps, tested), temps, amps, np.array([vceo]))[0])
+    return float(
+        leakage.leakage_most(
+            v, np.array([t]), np.full_like(temps, tested), temps, amps, np.array([vceo]), np.array([False])
+        )[0]
+    )
 
 
 @pytest.mark.parametrize(

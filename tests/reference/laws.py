@@ -50,6 +50,8 @@ def leakage(sheet: Sheet, v: float, t: float) -> float:
         return NAN
     points = [(x.temp, _at_voltage(x, v, sheet.vceo)) for x in sheet.leak]
     points = [(temp, i) for temp, i in points if known(i)]
+    if sheet.darlington:  # its own second base multiplies: a limit holds as it stands or not at all
+        return min((x.value for x in sheet.leak if x.temp >= t and x.v >= v * (1 - 1e-9)), default=NAN)
     bounds = [i * exp(ln(2.0) * max(_doublings(t) - _doublings(temp), 0.0)) for temp, i in points]
     for cold, i_cold in points:
         for hot, i_hot in points:

@@ -237,7 +237,7 @@ def _junction_floor(part: Part, rated: float) -> float:
             cold = max(25 - _test(x, x.min, False).temp, 0.0) * (2 if part.structure.endswith("darlington") else 1)
             moved = x.min + VT_ROOM * ln(div(rated / 10, ic)) - 2.5e-3 * cold
             certain = moved - 0.5 * div(ic, rated) - 0.02
-            sure = certain if certain > sure else sure
+            sure = certain if certain > sure and not part.structure.endswith("darlington") else sure
             top = moved if moved > top else top
     return sure if top == -INF else min(sure, top)
 

@@ -11,10 +11,14 @@ import pytest
 
 from engine.rank import rank
 from engine.ranking import Verdict
+from engine.shelf import Shelf
 
 from . import spice
+from .circuits import jobs
+from .datasheet import shelf_parts
 from .feasible import E24
 from .judge import Ratings, by_solver, judge, shortfalls
+from .population import population
 from .report import World, compare, simulate_fit
 
 pytestmark = pytest.mark.skipif(
@@ -44,6 +48,22 @@ def test_no_fit_is_false_and_no_bound_breaks(world: World, capsys: pytest.Captur
         print(f"\nsimulated {len(world.jobs)} requirements: {fits} fits, {len(wrong)} of them false or out of bounds")
     assert not wrong, "\n".join(wrong)
     assert fits >= 40  # an engine that promises nothing is of no use
+
+
+def test_darlingtons_leak_and_conduct_within_their_bounds() -> None:
+    """Their leakage feeds a second base, their least VBE is that of one junction at light loads."""
+    types = [kind for kind in population(108, 16, 302) if kind.darlington]
+    parts = shelf_parts(types, 302)
+    shelf, fits, wrong = Shelf.from_parts(parts), 0, []
+    for job in jobs(60, 302):
+        ranking, n = rank(job.requirement, shelf), job.numbers
+        for row in np.flatnonzero(ranking.verdict == Verdict.FITS):
+            found = simulate_fit(types[row], Ratings.of(parts[row]), n, ranking, int(row), thorough=False)
+            fits += 1
+            if found[0] + found[1]:
+                wrong.append(f"{types[row].number} misses {found[0]}, breaks {found[1]} of\n{job.toml}\n{found[2]}")
+    assert not wrong, "\n".join(wrong)
+    assert fits >= 5
 
 
 def test_given_networks_are_judged_truly(world: World) -> None:
