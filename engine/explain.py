@@ -72,6 +72,7 @@ class _Teller:
         chosen = {key: _number(column[i]) for key, column in self.judged.network.items()}
         chosen["tolerance"] = _number(self.req.number("resistors.tolerance"))
         return Explanation(
+            duty=self.req.duty,
             part=name,
             structure=structure,
             package=package,
@@ -79,7 +80,7 @@ class _Teller:
             evidence=Evidence(int(self.evidence[i])).word,
             says=_verdict_sentence(verdict, checks, int(self.worst[i])),
             network=chosen,
-            network_says=_network_sentence(chosen, self.req, chosen_here=self.chosen_here),
+            network_says=duties()[self.req.duty].network_says(chosen, self.req, self.chosen_here),
             bounds={key: _number(column[i]) for key, column in self.judged.bounds.items()},
             checks=checks,
             cautions=self.cautions,
@@ -202,20 +203,3 @@ def _verdict_sentence(verdict: Verdict, checks: tuple[CheckExplanation, ...], wo
     if verdict == Verdict.FITS_ON_TYPICALS:
         return f"fits only if a typical value holds{tail}"
     return f"fits{tail}"
-
-
-def _network_sentence(network: Mapping[str, float | None], req: Requirement, *, chosen_here: bool) -> str:
-    rb, rbe, low, high = (network.get(name) for name in ("rb", "rbe", "rb_low", "rb_high"))
-    if rb is None:
-        return "no base resistor can be chosen"
-    series, tol = req.word("resistors.series"), req.number("resistors.tolerance")
-    made = f"RB {show.quantity(rb, 'Ω')}" + (f", RBE {show.quantity(rbe, 'Ω')}" if rbe is not None else ", no RBE")
-    how = f"{made} ({series}, ±{tol * 100:g} %)" if chosen_here else f"{made} (given)"
-    if low is None or high is None:
-        return f"{how}; the window of RB cannot be stated"
-    if high < low:
-        return (
-            f"{how}; the window of RB is empty: the driver and the base need at least {show.quantity(low, 'Ω')}, "
-            f"saturation at most {show.quantity(max(high, 0.0), 'Ω')}"
-        )
-    return f"{how}; window of RB {show.quantity(low, 'Ω')} to {show.quantity(high, 'Ω')}"

@@ -48,7 +48,7 @@ def rank(
     network: Mapping[str, float] | None = None,
     cancelled: Callable[[], bool] = lambda: False,
 ) -> Ranking:
-    """The ranking of `shelf`; with `network` (rb, rbe in Ω) judge that network instead of choosing one.
+    """The ranking of `shelf`; with `network` (the duty's names, SI) judge that network instead of choosing one.
 
     Raises Cancelled between two blocks of parts once `cancelled` says so.
     """

@@ -63,7 +63,7 @@ class Ranking:
     policy: str
     shelf: Shelf
     checks: tuple[CheckColumn, ...]
-    network: Mapping[str, Floats]  # "rb", "rb_low", "rb_high", "rbe" in Ω; NaN: none, or none possible
+    network: Mapping[str, Floats]  # names of the duty, SI; NaN: none, or none possible
     bounds: Mapping[str, Floats]  # names of the contract: "vce_on_max", …; NaN: cannot be stated
     verdict: NDArray[np.int8]  # `Verdict`
     evidence: Grades  # weakest figure of the verdict
@@ -124,13 +124,14 @@ class CheckExplanation:
 class Explanation:
     """Everything there is to say about one part under one requirement."""
 
+    duty: str
     part: str
     structure: str
     package: str
     verdict: str
     evidence: str
     says: str  # the verdict in one sentence
-    network: Mapping[str, float | None]  # rb, rb_low, rb_high, rbe, tolerance
+    network: Mapping[str, float | None]  # names of the duty, and "tolerance"
     network_says: str
     bounds: Mapping[str, float | None]
     checks: tuple[CheckExplanation, ...]

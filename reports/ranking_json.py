@@ -3,6 +3,7 @@
 from collections.abc import Sequence
 from typing import Any
 
+from engine.duty import duties
 from engine.ranking import Explanation, Ranking
 
 from .program import program
@@ -45,14 +46,8 @@ def _result(ranking: Ranking, row: int, place: int, told: Explanation) -> dict[s
 
 def explanation_object(told: Explanation) -> dict[str, Any]:
     """Network, bounds and checks of one part."""
-    low, high = told.network.get("rb_low"), told.network.get("rb_high")
     return {
-        "network": {
-            "rb": told.network.get("rb"),
-            "rb_window": None if low is None or high is None else [low, high],
-            "rbe": told.network.get("rbe"),
-            "tolerance": told.network.get("tolerance"),
-        },
+        "network": duties()[told.duty].network_object(told.network),
         "bounds": dict(told.bounds),
         "checks": [
             {

@@ -5,28 +5,34 @@ from collections.abc import Callable, Sequence
 import numpy as np
 
 from engine import show
+from engine.duty import duties
 from engine.ranking import Ranking, Verdict
 
 from .text import markdown_row, markdown_text, neutral
 
 Cell = Callable[[Ranking, int], float | str]
 
-COLUMNS: tuple[tuple[str, str, Cell], ...] = (
+BEFORE: tuple[tuple[str, str, Cell], ...] = (
     ("part", "", lambda r, i: str(r.shelf.names[i])),
     ("verdict", "", lambda r, i: Verdict(int(r.verdict[i])).words),
     ("deciding check", "", lambda r, i: r.checks[int(r.worst[i])].name),
     ("headroom", "", lambda r, i: float(r.headroom[i])),
-    ("RB", "Ω", lambda r, i: float(r.network["rb"][i])),
-    ("RB from", "Ω", lambda r, i: float(r.network["rb_low"][i])),
-    ("RB to", "Ω", lambda r, i: float(r.network["rb_high"][i])),
-    ("RBE", "Ω", lambda r, i: float(r.network["rbe"][i])),
-    ("VCE on", "V", lambda r, i: float(r.bounds["vce_on_max"][i])),
-    ("TJ", "°C", lambda r, i: float(r.bounds["tj_max"][i])),
+)
+AFTER: tuple[tuple[str, str, Cell], ...] = (
     ("package", "", lambda r, i: str(r.shelf.package[i])),
     ("free", "", lambda r, i: float(r.shelf.stock[i] - r.shelf.reserved[i])),
     ("score", "", lambda r, i: float(r.score[i])),
 )
-"""Heading, unit and value of each column."""
+
+
+def columns(ranking: Ranking) -> tuple[tuple[str, str, Cell], ...]:
+    """Heading, unit and value of each column; those in the middle are the figures of the duty."""
+    figures = duties()[ranking.requirement.duty].figures
+    return BEFORE + tuple((one.heading, one.unit, _figure(one.key)) for one in figures) + AFTER
+
+
+def _figure(key: str) -> Cell:
+    return lambda r, i: float((r.network if key in r.network else r.bounds)[key][i])
 
 
 def places(ranking: Ranking) -> dict[int, int]:
@@ -37,8 +43,8 @@ def places(ranking: Ranking) -> dict[int, int]:
 def text_table(ranking: Ranking, rows: Sequence[int]) -> str:
     """Aligned columns for a terminal."""
     place = places(ranking)
-    lines = [["#", *(heading for heading, _, _ in COLUMNS)]]
-    lines += [[str(place[row]), *(_shown(ranking, row, column) for column in COLUMNS)] for row in rows]
+    lines = [["#", *(heading for heading, _, _ in columns(ranking))]]
+    lines += [[str(place[row]), *(_shown(ranking, row, column) for column in columns(ranking))] for row in rows]
     widths = [max(len(line[i]) for line in lines) for i in range(len(lines[0]))]
     padded = ("  ".join(cell.ljust(width) for cell, width in zip(line, widths, strict=True)).rstrip() for line in lines)
     return "\n".join(padded) + "\n"
@@ -50,10 +56,12 @@ def markdown_table(ranking: Ranking, rows: Sequence[int]) -> str:
     lines = [
         f"# {markdown_text(ranking.requirement.title or 'Ranking')}",
         "",
-        markdown_row(["#", *(h for h, _, _ in COLUMNS)]),
+        markdown_row(["#", *(h for h, _, _ in columns(ranking))]),
     ]
-    lines.append(markdown_row(["---"] * (len(COLUMNS) + 1)))
-    lines += [markdown_row([str(place[row]), *(_shown(ranking, row, column) for column in COLUMNS)]) for row in rows]
+    lines.append(markdown_row(["---"] * (len(columns(ranking)) + 1)))
+    lines += [
+        markdown_row([str(place[row]), *(_shown(ranking, row, column) for column in columns(ranking))]) for row in rows
+    ]
     return "\n".join(lines) + "\n"
 
 
@@ -63,7 +71,7 @@ def csv_table(ranking: Ranking, rows: Sequence[int]) -> str:
 
     place = places(ranking)
     data: dict[str, list[object]] = {"rank": [place[row] for row in rows]}
-    for heading, unit, value in COLUMNS:
+    for heading, unit, value in columns(ranking):
         data[f"{heading} [{unit}]" if unit else heading] = [_plain(value(ranking, row)) for row in rows]
     return pd.DataFrame(data).to_csv(index=False, lineterminator="\n")
 

@@ -76,7 +76,8 @@ def blocks(sheet: Sheet) -> Iterator[Block]:
         ("check", "status", "value", "limit", "headroom", "evidence"), tuple(_summary(one) for one in told.checks)
     )
     yield Heading(2, "Bounds at the worst")
-    yield Grid(("bound", "value"), tuple((name, show.quantity(v, _UNITS[name])) for name, v in told.bounds.items()))
+    units = duties()[told.duty].bound_units
+    yield Grid(("bound", "value"), tuple((name, show.quantity(v, units[name])) for name, v in told.bounds.items()))
     yield Heading(2, "Working")
     seen: set[tuple[str, str]] = set()
     for one in told.checks:
@@ -123,13 +124,6 @@ def sheet_object(sheet: Sheet) -> dict[str, Any]:
         "notes": list(told.notes),
         "sources": list(told.sources),
     }
-
-
-_UNITS = {
-    "vce_on_max": "V", "ic_on_max": "A", "ic_on_min": "A", "ib_on_min": "A", "ib_on_max": "A", "drive_current_max": "A",
-    "forced_beta_max": "", "power_max": "W", "tj_max": "°C", "ic_off_max": "A", "vce_off_max": "V", "t_on_max": "s",
-    "t_off_max": "s",
-}  # fmt: skip
 
 
 def _requirement(req: Requirement) -> Iterator[tuple[str, str]]:

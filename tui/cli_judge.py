@@ -139,7 +139,7 @@ def judge(context: click.Context, requirement: Path, type_number: str, network: 
           output: Path | None) -> None:  # fmt: skip
     """Judge a given base network instead of choosing one."""
     stated = read_requirement_file(requirement)
-    given = read_network(network)
+    given = read_network(network, stated.requirement.duty)
     with open_store(context) as store:
         shelf = store.shelf()
     import numpy as np
@@ -166,22 +166,26 @@ def judge(context: click.Context, requirement: Path, type_number: str, network: 
         context.exit(NOTHING_FITS)
 
 
-def read_network(text: str) -> Mapping[str, float]:
-    """rb and rbe in Ω from `rb=2200,rbe=10k`."""
+def read_network(text: str, duty: str) -> Mapping[str, float]:
+    """The values that the duty lets a user give, in SI, from text such as `rb=2200,rbe=10k`."""
+    from engine.duty import duties
     from importers.quantities import QuantityError, read_quantity
 
+    known = {one.key: one for one in duties()[duty].given}
+    all_of_them = ",".join(f"{name}=2k2" for name in known)
     found: dict[str, float] = {}
     for piece in text.split(","):
         name, _, value = piece.partition("=")
         name = name.strip()
-        if name not in ("rb", "rbe"):
-            fail(f"--network: {piece.strip()!r} is not known; write rb=2200 or rb=2200,rbe=10k", BAD_INPUT)
+        if name not in known:
+            fail(f"--network: {piece.strip()!r} is not known; write {all_of_them}", BAD_INPUT)
         try:
-            found[name] = read_quantity(value, "Ω")
+            found[name] = read_quantity(value, known[name].unit)
         except QuantityError as error:
             fail(f"--network: {name} is {value!r}: {error.says}; {error.mend}", BAD_INPUT)
         if found[name] <= 0:
-            fail(f"--network: {name} is {value!r}; a resistor is above zero", BAD_INPUT)
-    if "rb" not in found:
-        fail("--network: rb is missing; write rb=2200", BAD_INPUT)
+            fail(f"--network: {name} is {value!r}; it is above zero", BAD_INPUT)
+    for name, one in known.items():
+        if one.needed and name not in found:
+            fail(f"--network: {name} is missing; write {name}=2200", BAD_INPUT)
     return found

@@ -6,15 +6,19 @@ import numpy as np
 from numpy.typing import NDArray
 
 from engine import show
+from engine.duty import duties
+from engine.duty.base import Figure
 from engine.ranking import Ranking, Verdict
 
 from .shelf_table import NOT_KNOWN
 from .widgets.lines_view import Column
 
 
-def ohms(value: float) -> str:
-    """A resistance for a narrow cell: `4.7k`; a dash where there is no resistor."""
-    return NOT_KNOWN if value != value else show.quantity(value, "Ω", 3).removesuffix("Ω").replace(" ", "")
+def short(value: float, unit: str) -> str:
+    """A figure for a narrow cell, without its unit: `4.7k`, whole degrees; a dash where there is none."""
+    if value != value:
+        return NOT_KNOWN
+    return f"{value:.0f}" if unit == "°C" else show.quantity(value, unit, 3).removesuffix(unit).replace(" ", "")
 
 
 def headroom(value: float) -> str:
@@ -36,8 +40,8 @@ def columns(ranking: Ranking, marked: Callable[[str], bool]) -> list[Column]:
         len(verdict.words) for verdict in Verdict if ranking.count(verdict) or verdict == Verdict.CANNOT_SAY
     )
     nothing = np.full(len(shelf), np.nan)
-    rb, rbe = network.get("rb", nothing), network.get("rbe", nothing)
-    tj = bounds.get("tj_max", nothing)
+    figures = [one for one in duties()[ranking.requirement.duty].figures if one.width]
+    values = [network.get(one.key, bounds.get(one.key, nothing)) for one in figures]
     return [
         Column("", 1, lambda row: "*" if marked(str(shelf.names[row])) else ""),
         Column("#", rank_width, lambda row: str(place[row]), right=True),
@@ -49,12 +53,16 @@ def columns(ranking: Ranking, marked: Callable[[str], bool]) -> list[Column]:
         ),
         Column("room", 5, lambda row: headroom(float(ranking.headroom[row])), right=True),
         Column("worst check", 0, lambda row: names[int(ranking.worst[row])]),
-        Column("RB", 5, lambda row: ohms(float(rb[row])), right=True),
-        Column("RBE", 5, lambda row: ohms(float(rbe[row])), right=True, spare=2),
-        Column("TJ", 3, lambda row: NOT_KNOWN if tj[row] != tj[row] else f"{tj[row]:.0f}", right=True, spare=1),
+        *(_figure(one, column) for one, column in zip(figures, values, strict=True)),
         Column("stock", 5, lambda row: str(shelf.stock[row]), right=True),
         Column("score", 5, lambda row: _score(ranking, row), right=True),
     ]
+
+
+def _figure(figure: Figure, values: NDArray[np.float64]) -> Column:
+    return Column(
+        figure.heading, figure.width, lambda row: short(float(values[row]), figure.unit), right=True, spare=figure.spare
+    )
 
 
 def _score(ranking: Ranking, row: int) -> str:

@@ -24,6 +24,26 @@ class Judged:
 
 
 @dataclass(frozen=True)
+class Figure:
+    """A figure of the network or a bound that a ranking shows in a column of its own."""
+
+    heading: str
+    unit: str
+    key: str  # in the network, else in the bounds
+    width: int = 0  # cells in the interface; 0: only in reports
+    spare: int = 0  # the higher, the sooner a narrow view leaves it out
+
+
+@dataclass(frozen=True)
+class Given:
+    """A value of the network that a user may state instead of having it chosen."""
+
+    key: str
+    unit: str
+    needed: bool = False
+
+
+@dataclass(frozen=True)
 class Duty:
     """One kind of circuit."""
 
@@ -33,3 +53,8 @@ class Duty:
     judge: Callable[[Requirement, Prepared, Mapping[str, float] | None], Judged]
     eligible: Callable[[Requirement, Prepared], NDArray[np.bool_]]  # False: the wrong kind of part, not worth a design
     cautions: Callable[[Requirement], tuple[str, ...]]
+    figures: tuple[Figure, ...]
+    given: tuple[Given, ...]
+    network_says: Callable[[Mapping[str, float | None], Requirement, bool], str]  # the bool: chosen here, not given
+    network_object: Callable[[Mapping[str, float | None]], dict[str, object]]  # the network in JSON
+    bound_units: Mapping[str, str]

@@ -30,4 +30,15 @@ SOURCES: dict[str, str] = {
     "root of time and is complete after about a third of a second without a sink",
     "safe area": "Common practice: second breakdown is not to be feared below 30 V or half the power line",
     "driver base": "Common practice: base current up to a tenth of the rated collector current, or what the sheet tests",
+    "divider bias": "D. A. Neamen, Electronic Circuit Analysis and Design, ex. 3.15: divider by Thévenin (as transcribed)",
+    "stability factors": "D. A. Bell, Electronic Devices and Circuits, ex. 5.17 (as transcribed); the others are the "
+    "derivatives of the same equation",
+    "hybrid-pi": "L. J. Giacoletto, Study of p-n-p alloy junction transistors from d-c through medium frequencies, "
+    "RCA Review 15 (1954) 506 (reference from memory)",
+    "miller": "J. M. Miller, Dependence of the input impedance of a three-electrode vacuum tube upon the load in the "
+    "plate circuit, Sci. Papers Bur. Stand. 15 (1920) 367 (reference from memory)",
+    "load line": "A. Malvino, D. J. Bates, Electronic Principles, ex. 12-2: output compliance (as transcribed)",
+    "class b": "A. S. Sedra, K. C. Smith, Microelectronic Circuits, ex. 14.1: worst loss at 2/π (as transcribed)",
+    "transistor noise": "E. G. Nielsen, Behavior of noise figure in junction transistors, Proc. IRE 45 (1957) 957 "
+    "(reference from memory)",
 }

@@ -61,6 +61,7 @@ def explanation_of(shelf: Shelf, row: int) -> Explanation:
                          ("RthJA",),                         "cannot say: no usable RthJA limit on file", ()),
     )  # fmt: skip
     return Explanation(
+        duty="switch",
         part=str(shelf.names[row]),
         structure=shelf.structure_word(row),
         package=str(shelf.package[row]),
