@@ -121,6 +121,18 @@ class CheckExplanation:
 
 
 @dataclass(frozen=True, slots=True)
+class NearMiss:
+    """One change that alone would do."""
+
+    change: str  # dotted place in the requirement file, or "part." and a symbol
+    was: float | None  # None where nothing is stated or on file
+    to: float
+    unit: str
+    says: str
+    conditions: tuple[tuple[str, float], ...] = ()  # of a value of the part
+
+
+@dataclass(frozen=True, slots=True)
 class Explanation:
     """Everything there is to say about one part under one requirement."""
 
@@ -138,3 +150,4 @@ class Explanation:
     cautions: tuple[str, ...]
     notes: tuple[str, ...]  # defaults taken, allowances made
     sources: tuple[str, ...]  # full references of the laws and sheets used
+    near_misses: tuple[NearMiss, ...] = ()  # what alone would make it fit; empty where nobody asked or nothing would

@@ -60,6 +60,7 @@ class Requirement:
     title: str
     values: Mapping[str, Value] = field(default_factory=dict)
     notes: tuple[str, ...] = ()  # defaults taken and things the user should know
+    implied: frozenset[str] = frozenset()  # keys that nobody stated: they follow from others and change with them
 
     def __post_init__(self) -> None:
         object.__setattr__(self, "values", MappingProxyType(dict(self.values)))

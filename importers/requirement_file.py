@@ -94,7 +94,7 @@ def _build(duty: Duty, title: str, stated: Mapping[str, Any], problems: list[Pro
     problems += [one for one in validate(duty.fields, completed) if one.key not in said | {m.key for m in more}]
     if problems:
         raise RequirementError(tuple(dict.fromkeys(problems)))
-    return Requirement(duty.name, title, completed, tuple(notes))
+    return Requirement(duty.name, title, completed, tuple(notes), frozenset(completed.keys() - full.keys()))
 
 
 def _value(one: Field, raw: Any) -> Value:

@@ -40,8 +40,23 @@ def _result(ranking: Ranking, row: int, place: int, told: Explanation) -> dict[s
         "stock": int(ranking.shelf.stock[row]),
         "reserved": int(ranking.shelf.reserved[row]),
         **explanation_object(told),
-        "near_misses": [],
+        "near_misses": near_misses_object(told),
     }
+
+
+def near_misses_object(told: Explanation) -> list[dict[str, Any]]:
+    """What alone would make the part fit, the easiest first."""
+    return [
+        {
+            "change": one.change,
+            "from": one.was,
+            "to": one.to,
+            "unit": one.unit,
+            "says": one.says,
+            **dict(one.conditions),
+        }
+        for one in told.near_misses
+    ]
 
 
 def explanation_object(told: Explanation) -> dict[str, Any]:

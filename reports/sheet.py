@@ -12,7 +12,7 @@ from engine.requirement import Requirement
 from engine.symbols import SYMBOLS
 
 from .program import program
-from .ranking_json import explanation_object
+from .ranking_json import explanation_object, near_misses_object
 
 
 @dataclass(frozen=True, slots=True)
@@ -75,6 +75,9 @@ def blocks(sheet: Sheet) -> Iterator[Block]:
     yield Grid(
         ("check", "status", "value", "limit", "headroom", "evidence"), tuple(_summary(one) for one in told.checks)
     )
+    if told.near_misses:
+        yield Heading(2, "What alone would make it fit")
+        yield Bullets(tuple(one.says for one in told.near_misses))
     yield Heading(2, "Bounds at the worst")
     units = duties()[told.duty].bound_units
     yield Grid(("bound", "value"), tuple((name, show.quantity(v, units[name])) for name, v in told.bounds.items()))
@@ -116,6 +119,7 @@ def sheet_object(sheet: Sheet) -> dict[str, Any]:
         "says": told.says,
         "network_says": told.network_says,
         **explanation_object(told),
+        "near_misses": near_misses_object(told),
         "steps": {
             one.name: [{name: getattr(step, name) for name in Step.__slots__} for step in one.steps]
             for one in told.checks

@@ -2,6 +2,7 @@
 
 import json
 from collections.abc import Mapping
+from dataclasses import replace
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -10,12 +11,13 @@ import click
 from .cli_support import BAD_INPUT, NOTHING_FITS, fail, give, open_store, read_requirement_file, rows_of, today
 
 if TYPE_CHECKING:
-    from engine.ranking import Ranking
+    from engine.ranking import NearMiss, Ranking
 
 FILE = click.Path(path_type=Path)
 OUTPUT = click.option("--output", "-o", type=FILE, help="Write into this file, whole or not at all.")
 REQUIREMENT = click.argument("requirement", type=FILE, metavar="REQUIREMENT.toml")
 TOP = 20
+NEAREST = 5  # parts that do not fit for which it is worked out what would make them
 
 
 _ENDINGS = {".json": "json", ".csv": "csv", ".md": "markdown", ".html": "html"}
@@ -61,21 +63,36 @@ def rank(context: click.Context, requirement: Path, parts: tuple[str, ...], top:
     if not everything and not parts:
         best = [row for row in order if ranking.verdict[row] <= Verdict.FITS_ON_TYPICALS]
         order = (order if form == "json" else best)[:top]
-    give(_ranked(ranking, order, form), output)
+    near = {}
+    if form == "json" or (form == "text" and not order):
+        near = _near(context, ranking, order or [int(row) for row in ranking.order[:NEAREST]])
+    give(_ranked(ranking, order, form, near), output)
     if form == "text":
         click.echo(_tally(ranking), err=True)
     if ranking.count(Verdict.FITS) == 0:
         context.exit(NOTHING_FITS)
 
 
-def _ranked(ranking: "Ranking", rows: list[int], form: str) -> str:
+def _near(context: click.Context, ranking: "Ranking", rows: list[int]) -> dict[int, tuple["NearMiss", ...]]:
+    """What alone would make the nearest of `rows` fit that do not; by row."""
+    from engine.near_miss import near_misses
+    from engine.ranking import Verdict
+
+    open_ = [row for row in rows if ranking.verdict[row] != Verdict.FITS][:NEAREST]
+    with open_store(context) as store:
+        parts = [store.part(str(ranking.shelf.names[row])).part for row in open_]
+    return {row: near_misses(ranking.requirement, part) for row, part in zip(open_, parts, strict=True)}
+
+
+def _ranked(ranking: "Ranking", rows: list[int], form: str, near: Mapping[int, tuple["NearMiss", ...]]) -> str:
     from reports import ranking_table
     from reports.ranking_json import ranking_object
 
     if form == "json":
         from engine.explain import explain_rows
 
-        told = list(zip(rows, explain_rows(ranking.requirement, ranking.shelf, rows), strict=True))
+        each = explain_rows(ranking.requirement, ranking.shelf, rows)
+        told = [(row, replace(one, near_misses=near.get(row, ()))) for row, one in zip(rows, each, strict=True)]
         return json.dumps(ranking_object(ranking, told), ensure_ascii=False, indent=1, allow_nan=False) + "\n"
     if form == "csv":
         return ranking_table.csv_table(ranking, rows)
@@ -83,12 +100,13 @@ def _ranked(ranking: "Ranking", rows: list[int], form: str) -> str:
         return ranking_table.markdown_table(ranking, rows)
     if rows:
         return ranking_table.text_table(ranking, rows)
-    nearest = [int(row) for row in ranking.order[:5]]
-    return (
-        "nothing fits; the nearest are\n" + ranking_table.text_table(ranking, nearest)
-        if nearest
-        else "the shelf is empty\n"
-    )
+    nearest = [int(row) for row in ranking.order[:NEAREST]]
+    if not nearest:
+        return "the shelf is empty\n"
+    lines = ["nothing fits; the nearest are", ranking_table.text_table(ranking, nearest)]
+    changes = [f"{ranking.shelf.names[row]} would fit: {one.says}" for row in nearest for one in near.get(row, ())]
+    lines += changes or ["no single change would make one of them fit"]
+    return "\n".join(lines).rstrip() + "\n"
 
 
 def _tally(ranking: "Ranking") -> str:
@@ -114,14 +132,17 @@ def sheet(context: click.Context, type_number: str, requirement: Path, markdown:
     stated = read_requirement_file(requirement)
     with open_store(context) as store:
         shelf = store.shelf()
-        limits = store.part(type_number).part.limits
+        part = store.part(type_number).part
     from engine.explain import explain
+    from engine.near_miss import near_misses
     from reports.sheet import Sheet, sheet_object
     from reports.sheet_html import sheet_html
     from reports.sheet_markdown import sheet_markdown
 
     (row,) = rows_of(shelf, (type_number,))
-    one = Sheet(stated.requirement, explain(stated.requirement, shelf, row), shelf.fingerprint, today(), limits)
+    told = explain(stated.requirement, shelf, row)
+    told = replace(told, near_misses=near_misses(stated.requirement, part))
+    one = Sheet(stated.requirement, told, shelf.fingerprint, today(), part.limits)
     if form == "json":
         give(json.dumps(sheet_object(one), ensure_ascii=False, indent=1, allow_nan=False) + "\n", output)
     else:

@@ -2,12 +2,13 @@
 
 import json
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from datetime import date
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
+    from engine.part import Part
     from engine.ranking import Ranking
     from reports.sheet import Sheet as Report
 
@@ -43,13 +44,15 @@ class Sheet:
         return sheet_markdown(self.report).encode()
 
 
-def make_sheet(ranking: "Ranking", row: int) -> Sheet:
+def make_sheet(ranking: "Ranking", row: int, part: "Part") -> Sheet:
     """Write the sheet of the part at `row`, dated today."""
     from engine.explain import explain
+    from engine.near_miss import near_misses
     from reports.sheet import Sheet as Report
 
     told = explain(ranking.requirement, ranking.shelf, row)
-    report = Report(ranking.requirement, told, ranking.shelf.fingerprint, date.today().isoformat())
+    told = replace(told, near_misses=near_misses(ranking.requirement, part))
+    report = Report(ranking.requirement, told, ranking.shelf.fingerprint, date.today().isoformat(), part.limits)
     return Sheet(told.part, report)
 
 

@@ -44,6 +44,30 @@ class Given:
 
 
 @dataclass(frozen=True)
+class Lever:
+    """A demand that could be eased."""
+
+    key: str  # dotted place in the requirement file
+    unit: str
+    says: str  # "let the driver give"
+    span: Callable[
+        [Requirement], tuple[float, float]
+    ]  # from what is asked to the most it could be eased; NaN: not asked
+
+
+@dataclass(frozen=True)
+class Reading:
+    """A limit that a sheet could state for the circuit, from a value that would surely do to one that would not."""
+
+    symbol: str
+    bound: str  # "min" or "max"
+    unit: str
+    conditions: tuple[tuple[str, float], ...]
+    surely: float
+    hardly: float
+
+
+@dataclass(frozen=True)
 class Duty:
     """One kind of circuit."""
 
@@ -58,3 +82,5 @@ class Duty:
     network_says: Callable[[Mapping[str, float | None], Requirement, bool], str]  # the bool: chosen here, not given
     network_object: Callable[[Mapping[str, float | None]], dict[str, object]]  # the network in JSON
     bound_units: Mapping[str, str]
+    levers: tuple[Lever, ...]
+    readings: Callable[[Requirement], tuple[Reading, ...]]

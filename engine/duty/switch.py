@@ -17,6 +17,7 @@ from .switch_cautions import cautions
 from .switch_design import Needs, Network, at_an_end, design, needs, window
 from .switch_fields import FIELDS, complete
 from .switch_figures import BOUND_UNITS, FIGURES, GIVEN, network_object, network_says
+from .switch_levers import LEVERS, readings
 from .switch_situation import Situation, situation
 
 Floats = NDArray[np.float64]
@@ -133,5 +134,17 @@ def eligible(req: Requirement, p: Prepared) -> NDArray[np.bool_]:
 
 
 DUTY = Duty(
-    "switch", FIELDS, complete, judge, eligible, cautions, FIGURES, GIVEN, network_says, network_object, BOUND_UNITS
+    "switch",
+    FIELDS,
+    complete,
+    judge,
+    eligible,
+    cautions,
+    FIGURES,
+    GIVEN,
+    network_says,
+    network_object,
+    BOUND_UNITS,
+    LEVERS,
+    readings,
 )

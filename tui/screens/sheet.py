@@ -6,6 +6,7 @@ from textual import work
 from textual.app import ComposeResult
 
 from ..commands import bindings_of
+from ..source import SourceError
 from ..state import Session
 from ..widgets.lines_of_screen import TitleLine
 from ..widgets.text_view import TextView
@@ -42,9 +43,15 @@ class SheetScreen(Room):
     def _write(self) -> None:
         from ..exports import make_sheet
 
-        if self.session.ranking is not None:
-            sheet = make_sheet(self.session.ranking, self.row)
-            self.app.call_from_thread(self._fill, sheet)
+        ranking = self.session.ranking
+        if ranking is None:
+            return
+        try:
+            part = self.desk.source.part(str(ranking.shelf.names[self.row]))
+        except SourceError as trouble:
+            self.app.call_from_thread(self.query_one(TextView).show, [str(trouble)])
+            return
+        self.app.call_from_thread(self._fill, make_sheet(ranking, self.row, part))
 
     def _fill(self, sheet: "Sheet") -> None:
         self._sheet = sheet
