@@ -65,5 +65,5 @@ def text_report(landed: Sequence[Landed], parts: int, *, dry_run: bool = False) 
         lines += [f"  row {row}: {says} [contradiction]" for row, says in one.refused]
         lines += [f"  row {row}: {says} [ledger]" for row, says in one.notices]
     end = "nothing was written (dry run); the shelf would hold" if dry_run else "the shelf holds"
-    lines.append(f"{end} {parts} parts")
+    lines.append(f"{end} {parts} part{'s' if parts != 1 else ''}")
     return "\n".join(lines) + "\n"

@@ -114,7 +114,8 @@ def _tally(ranking: "Ranking") -> str:
 
     counts = ", ".join(f"{ranking.count(verdict)} {verdict.words}" for verdict in Verdict)
     notes = "".join(f"\nnote: {note}" for note in ranking.requirement.notes)
-    return f"{len(ranking.shelf)} parts: {counts}{notes}"
+    n = len(ranking.shelf)
+    return f"{n} part{'s' if n != 1 else ''}: {counts}{notes}"
 
 
 @click.command()
