@@ -12,7 +12,7 @@ import numpy as np
 from .duty import duties
 from .duty.base import Lever, Reading
 from .explain import explain_rows
-from .part import Limit, Part
+from .part import Part
 from .rank import prepared, rank
 from .ranking import NearMiss, Verdict
 from .requirement import Requirement, Value
@@ -84,9 +84,7 @@ def _looked_up(requirement: Requirement, part: Part, reading: Reading) -> NearMi
     """The worst that a value could be, were it on file, for the part to fit."""
 
     def fits(value: float) -> bool:
-        low, high = (value, None) if reading.bound == "min" else (None, value)
-        limit = Limit(reading.symbol, min=low, max=high, conditions=reading.conditions)
-        return _fits(requirement, Shelf.from_parts([replace(part, limits=(*part.limits, limit))]))
+        return _fits(requirement, Shelf.from_parts([replace(part, limits=(*part.limits, reading.limit(value)))]))
 
     if not fits(reading.surely):
         return None

@@ -7,6 +7,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from ..check import Outcome
+from ..part import Limit
 from ..prepared import Prepared
 from ..requirement import Field, Problem, Requirement, Value
 
@@ -65,6 +66,11 @@ class Reading:
     conditions: tuple[tuple[str, float], ...]
     surely: float
     hardly: float
+
+    def limit(self, value: float, source: str = "") -> Limit:
+        """The limit as a sheet would state it."""
+        low, high = (value, None) if self.bound == "min" else (None, value)
+        return Limit(self.symbol, min=low, max=high, conditions=self.conditions, source=source)
 
 
 @dataclass(frozen=True)

@@ -134,17 +134,6 @@ def eligible(req: Requirement, p: Prepared) -> NDArray[np.bool_]:
 
 
 DUTY = Duty(
-    "switch",
-    FIELDS,
-    complete,
-    judge,
-    eligible,
-    cautions,
-    FIGURES,
-    GIVEN,
-    network_says,
-    network_object,
-    BOUND_UNITS,
-    LEVERS,
-    readings,
-)
+    "switch", FIELDS, complete, judge, eligible, cautions, FIGURES, GIVEN, network_says, network_object, BOUND_UNITS,
+    LEVERS, readings,
+)  # fmt: skip

@@ -54,19 +54,26 @@ def readings(req: Requirement) -> tuple[Reading, ...]:
     sit = situation(req)
     ic, vs = float(sit.ic_max.values), float(sit.vs_max.values)
     off = vs if sit.v_off is None else float(sit.v_off.values)
+    most = 1.0 if sit.ic_inrush is None else float(sit.ic_inrush.values) / ic
     saturated = (("ib", ic / 10), ("ic", ic))
     timed = (("ib", ic / 10), ("ic", ic), ("vcc", vs))
     reversed_ = (("ib", ic / 10), ("ib2", ic / 10), ("ic", ic), ("vcc", vs))
+    sunk = req.has("heatsink.case_to_ambient")
+    switches = req.number("timing.frequency") > 0
+    times = []
+    if switches or req.has("limits.turn_on_max"):
+        times.append(Reading("ton", "max", "s", timed, 1e-9, 1e-3))
+    if switches or req.has("limits.turn_off_max"):
+        times.append(Reading("toff", "max", "s", reversed_, 1e-9, 1e-3))
     return (
         Reading("VCE(sat)", "max", "V", saturated, 0.02, 3.0),
         Reading("VBE(sat)", "max", "V", saturated, 0.7, 2.0),
         Reading("hFE", "min", "", (("ic", ic), ("vce", 1.0)), 1000.0, 5.0),
         Reading("ICBO", "max", "A", (("vcb", off),), 1e-11, 1e-2),
-        Reading("VCEO", "max", "V", (), 2000.0, 5.0),
-        Reading("IC", "max", "A", (), 1000.0, 1e-3),
+        Reading("VCEO", "max", "V", (), 3 * off, 0.2 * off),
+        Reading("IC", "max", "A", (), 5 * ic * most, 0.2 * ic),
         Reading("VEBO", "max", "V", (), 20.0, 1.0),
         Reading("TJ", "max", "°C", (), 175.0, 50.0),
-        Reading("RthJA", "max", "K/W", (), 5.0, 1000.0),
-        Reading("ton", "max", "s", timed, 1e-9, 1e-3),
-        Reading("toff", "max", "s", reversed_, 1e-9, 1e-3),
+        Reading("RthJC", "max", "K/W", (), 0.5, 100.0) if sunk else Reading("RthJA", "max", "K/W", (), 5.0, 1000.0),
+        *times,
     )
