@@ -44,8 +44,18 @@ def explain_rows(
         some = np.asarray(rows[start : start + BLOCK], dtype=np.intp)
         duty = duties()[requirement.duty]
         judged = duty.judge(requirement, prepared(shelf).take(some), network)
-        teller = _Teller(requirement, judged, duty.cautions(requirement), chosen_here=network is None, working=working)
-        for i, row in enumerate(some):
+        said = duty.cautions(requirement)
+
+        def teller_of(one: Judged, said: tuple[str, ...] = said) -> _Teller:
+            return _Teller(requirement, one, said, chosen_here=network is None, working=working)
+
+        first = teller_of(judged)
+        again: dict[int, tuple[_Teller, int]] = {}
+        for places, better in judged.again:
+            other = teller_of(better)
+            again |= {int(place): (other, j) for j, place in enumerate(places)}
+        for k, row in enumerate(some):
+            teller, i = again.get(k, (first, k))
             yield teller.tell(i, str(shelf.names[row]), shelf.structure_word(int(row)), str(shelf.package[row]))
 
 

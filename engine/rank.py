@@ -12,6 +12,7 @@ from numpy.typing import NDArray
 
 from .desirability import DEFAULT_WEIGHTS, criteria, overall
 from .duty import duties
+from .duty.base import Judged
 from .evidence import Evidence
 from .prepared import Prepared, prepare
 from .ranking import CheckColumn, Ranking, Status, Verdict
@@ -64,8 +65,7 @@ def rank(
         if cancelled():
             raise Cancelled
         judged = duty.judge(requirement, ready.take(slice(start, end)), network)
-        columns = tuple(one.column() for one in judged.outcomes)
-        return _Block(columns, decide(columns), judged.network, judged.bounds, judged.size)
+        return _block(judged)
 
     if pieces == 1:
         blocks = [judge(0, len(worth))]
@@ -84,6 +84,19 @@ class _Block:
     network: Mapping[str, Floats]
     bounds: Mapping[str, Floats]
     size: Floats
+
+
+def _block(judged: Judged) -> _Block:
+    """What was judged, with what was judged again in its place."""
+    columns = tuple(one.column() for one in judged.outcomes)
+    for places, better in judged.again:
+        for column, other in zip(columns, (one.column() for one in better.outcomes), strict=True):
+            for name in ("value", "limit", "headroom", "status", "evidence"):
+                getattr(column, name)[places] = getattr(other, name)
+        for mine, theirs in ((judged.network, better.network), (judged.bounds, better.bounds)):
+            for name, values in theirs.items():
+                mine[name][places] = values
+    return _Block(columns, decide(columns), judged.network, judged.bounds, judged.size)
 
 
 def _ranking(

@@ -22,6 +22,7 @@ class Judged:
     network: Mapping[str, Floats]
     bounds: Mapping[str, Floats]
     size: Floats  # rated over needed collector current: how far a part is oversized
+    again: "tuple[tuple[NDArray[np.intp], Judged], ...]" = ()  # places judged anew with another network, which holds
 
 
 @dataclass(frozen=True)

@@ -1,6 +1,7 @@
 """Switching a load: low side (NPN) or high side (PNP), a base resistor and, where needed, one to the emitter."""
 
 from collections.abc import Mapping
+from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -32,11 +33,22 @@ def judge(req: Requirement, p: Prepared, network: Mapping[str, float] | None = N
         sit = situation(req)
         n = needs(sit, p)
         if network is not None:
-            net = _given(sit, p, n, network)
-            outcomes, b = _outcomes(sit, p, n, net)
-        else:
-            net, outcomes, b = _best(sit, p, n)
-        return Judged(outcomes, _network_columns(net), _bound_columns(b, len(p)), p.ic / float(sit.ic_max.values))
+            return _judged(sit, p, n, _given(sit, p, n, network))
+        net = design(sit, p, n)
+        found = _judged(sit, p, n, net)
+        rows = np.flatnonzero(_only_network(found.outcomes, net))
+        worst = _worst(found.outcomes)
+        again = []
+        for some in np.array_split(rows, -(-len(rows) // AT_ONCE)) if len(rows) else ():
+            changed, other = _another(sit, p, n, net, some, worst[some])
+            if len(changed):
+                again.append((changed, _judged(sit, p.take(changed), n.take(changed), other)))
+        return replace(found, again=tuple(again))
+
+
+def _judged(sit: Situation, p: Prepared, n: Needs, net: Network) -> Judged:
+    outcomes, b = _outcomes(sit, p, n, net)
+    return Judged(outcomes, _network_columns(net), _bound_columns(b, len(p)), p.ic / float(sit.ic_max.values))
 
 
 def _given(sit: Situation, p: Prepared, n: Needs, network: Mapping[str, float]) -> Network:
@@ -52,34 +64,18 @@ def _outcomes(sit: Situation, p: Prepared, n: Needs, net: Network) -> tuple[tupl
     return tuple(one for one in found if one is not None), b
 
 
-def _best(sit: Situation, p: Prepared, n: Needs) -> tuple[Network, tuple[Outcome, ...], Bounds]:
-    """The chosen network; where nothing is wrong but what the network decides, others are tried."""
-    net = design(sit, p, n)
-    outcomes, b = _outcomes(sit, p, n, net)
-    rows = np.flatnonzero(_only_network(outcomes, net))
-    if not len(rows):
-        return net, outcomes, b
-    worst = _worst(outcomes)
-    for some in np.array_split(rows, -(-len(rows) // AT_ONCE)):
-        net = _another(sit, p.take(some), n.take(some), net, some, worst[some])
-    return net, *_outcomes(sit, p, n, net)
-
-
 def _another(
     sit: Situation, p: Prepared, n: Needs, net: Network, rows: NDArray[np.intp], worst: NDArray[np.int8]
-) -> Network:
-    """The network with another one for those of `rows` that another one serves better: the first of the best."""
+) -> tuple[NDArray[np.intp], Network]:
+    """Those of `rows` that another network serves better, and that network: the first of the best."""
     k, m = len(RETRIES), len(rows)
-    copies = np.tile(np.arange(m), k)
-    plain = net.take(rows)
-    others = Network.joined([at_an_end(sit, p, n, plain, place, stiff=stiff) for place, stiff in RETRIES])
-    outcomes, _ = _outcomes(
-        sit, p.take(copies), n.take(copies), others
-    )  # all at once: small shelves are mostly overhead
+    some, needed, plain = p.take(rows), n.take(rows), net.take(rows)
+    others = Network.joined([at_an_end(sit, some, needed, plain, place, stiff=stiff) for place, stiff in RETRIES])
+    copies = np.tile(np.arange(m), k)  # all at once: a short shelf is mostly overhead
+    outcomes, _ = _outcomes(sit, some.take(copies), needed.take(copies), others)
     status = _worst(outcomes).reshape(k, m)
-    first = status.argmin(axis=0)
     better = np.flatnonzero(status.min(axis=0) < worst)
-    return net.put(rows[better], others.take(first[better] * m + better))
+    return rows[better], others.take(status.argmin(axis=0)[better] * m + better)
 
 
 def _only_network(outcomes: tuple[Outcome, ...], net: Network) -> NDArray[np.bool_]:
